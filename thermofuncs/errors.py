@@ -1,0 +1,342 @@
+"""What can go wrong, and the worksheet value that each kind shows.
+
+ThermofuncsError
+    NotUnderstood   #VALUE!  an argument that cannot be read or does not fit
+    NotAvailable    #N/A     a substance or property that the data lacks
+    NotValid        #NUM!    a state, range or fit outside what is valid
+
+Every class below carries one sentence as a template; the data stands apart in attributes and the
+sentence is composed when it is shown.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import ClassVar
+
+
+@dataclass(frozen=True, slots=True)
+class CellError:
+    """A worksheet error value, with the sentence behind it where it is ours.
+
+    Parameters
+    ----------
+    value : str. The worksheet's own spelling, such as ``#NUM!``.
+    sentence : str. Why, or empty where the error came in with an argument.
+    """
+
+    value: str
+    sentence: str = ""
+
+    def __str__(self) -> str:
+        """Show the worksheet value."""
+        return self.value
+
+
+class ThermofuncsError(Exception):
+    """A calculation that cannot be done, with the sentence that says why and what would do."""
+
+    worksheet_value: ClassVar[str] = "#VALUE!"
+    template: ClassVar[str] = "{text}"
+
+    def __init__(self, **data: object) -> None:
+        super().__init__()
+        self.data = data
+
+    @property
+    def sentence(self) -> str:
+        """The sentence, composed from the class's template and this error's data."""
+        return self.template.format(**self.data)
+
+    def __str__(self) -> str:
+        """Show the sentence."""
+        return self.sentence
+
+    def as_cell(self) -> CellError:
+        """The worksheet value with its sentence."""
+        return CellError(self.worksheet_value, self.sentence)
+
+
+class NotUnderstood(ThermofuncsError):
+    """An argument cannot be read, or has the wrong dimension or shape."""
+
+    worksheet_value = "#VALUE!"
+
+
+class NotAvailable(ThermofuncsError):
+    """The data lacks the substance or the property, or cannot tell which is meant."""
+
+    worksheet_value = "#N/A"
+
+
+class NotValid(ThermofuncsError):
+    """The arguments were read, but there is no valid answer for them."""
+
+    worksheet_value = "#NUM!"
+
+
+# --- arguments -----------------------------------------------------------------------------------
+
+
+class MissingArgument(NotUnderstood):
+    """A required argument was left out."""
+
+    template = "{argument} is missing: {function} needs {meaning}."
+
+
+class BlankArgument(NotAvailable):
+    """A required argument points to a blank cell."""
+
+    template = "{argument} is a blank cell: {function} needs {meaning}."
+
+
+class WrongType(NotUnderstood):
+    """An argument is not the sort of thing that is needed."""
+
+    template = "{argument} is {given}: {needed} is needed."
+
+
+class BadArguments(NotUnderstood):
+    """Several arguments are wrong at once."""
+
+    template = "{text}"
+
+
+class UnknownFunction(NotUnderstood):
+    """No function has this name."""
+
+    template = "There is no function {name}. Near names: {near}."
+
+
+class UnknownOption(NotUnderstood):
+    """An option word is not understood."""
+
+    template = "options has {word!r}, which {function} does not know: the words are {known}."
+
+
+# --- combinations and reactions of data ------------------------------------------------------------
+
+
+class OutsideRange(NotValid):
+    """A temperature lies outside the range of the data."""
+
+    template = "{argument} = {given} is outside the data of {what}: {ranges}"
+
+
+class OutsideDouble(NotValid):
+    """A value is too large or too small for a number."""
+
+    template = "{what} is {where} the range of numbers (its natural logarithm is {lnk}): use {use}."
+
+
+class UncertaintyUnknown(NotAvailable):
+    """A data row does not state an uncertainty."""
+
+    template = (
+        "{substance} has no stated uncertainty of {property}: give a row with u(dfH) and u(S) in a data table."
+    )
+
+
+class NotAFunctionOfData(NotAvailable):
+    """A reaction row has no substances."""
+
+    template = "{what} is a whole reaction row of the data table, which states no uncertainty."
+
+
+# --- units and quantity texts ----------------------------------------------------------------------
+
+
+class UnknownUnit(NotUnderstood):
+    """A unit's spelling is not in the closed list."""
+
+    template = "{argument} has the unit {given!r}, which is not known. {near}"
+
+
+class WrongDimension(NotUnderstood):
+    """A unit measures something else than is needed."""
+
+    template = (
+        "{argument} is in {given}, a unit of {given_dimension}: a unit of {needed_dimension} is needed, "
+        "such as {examples}.{remedy}"
+    )
+
+
+class GaugePressure(NotUnderstood):
+    """A pressure counts from the atmosphere."""
+
+    template = (
+        "{argument} has {given!r}, a gauge pressure: add the local atmospheric pressure "
+        "and write an absolute one, such as bar or psi."
+    )
+
+
+class ShiftedScale(NotUnderstood):
+    """A temperature scale whose zero is not absolute stands where a factor is needed."""
+
+    template = (
+        "{argument}: from {given} to {needed} the zero moves and no factor converts. "
+        "A difference of temperatures is written as degC difference."
+    )
+
+
+class DecimalComma(NotUnderstood):
+    """A quantity text has a comma in its number."""
+
+    template = "{argument} is {given!r}, with a comma in the number: write {proposal}."
+
+
+class NotAQuantity(NotUnderstood):
+    """A text is not a number with a unit."""
+
+    template = "{argument} is the text {given!r}, which {why}, such as 25 degC or 1.5 bar."
+
+
+class BelowAbsoluteZero(NotValid):
+    """A temperature is not above absolute zero."""
+
+    template = "{argument} is {given}: a temperature above absolute zero ({zero}) is needed."
+
+
+class QuantityOutsideNumbers(NotValid):
+    """A quantity is too large or too small for a number."""
+
+    template = "{argument} is {given}, which is outside the range of numbers."
+
+
+class NoSuchConstant(NotAvailable):
+    """No constant has this name."""
+
+    template = "{argument} is {given!r}, which is not in the list of constants: {known}."
+
+
+# --- relations with typed constants ----------------------------------------------------------------
+
+
+class GibbsEnergyOfAnotherTemperature(NotValid):
+    """A Gibbs energy is used at a temperature that it does not belong to."""
+
+    template = (
+        "drg belongs to {belongs_to} K and t is {wanted} K; ΔrG° changes with temperature, so the two may "
+        "differ by 0.5 K at most. Take ln K at {belongs_to} K and carry it with LNKAT."
+    )
+
+
+class OutsideNumbers(NotValid):
+    """A result is too large or too small for a number."""
+
+    template = "{what} is outside the range of numbers{detail}. {remedy}"
+
+
+class NotAboveZero(NotValid):
+    """A number must be positive."""
+
+    template = "{argument} is {given}: {what} above 0 is needed."
+
+
+class BlankInRange(NotAvailable):
+    """A cell of a range is blank where every cell counts."""
+
+    template = "{argument} has a blank cell, number {place} in row order: fill it, or write 0 if 0 is meant."
+
+
+class TextInRange(NotUnderstood):
+    """A cell of a range holds no number."""
+
+    template = "{argument} has {given} as cell number {place} in row order: a number is needed."
+
+
+class DifferentLengths(NotUnderstood):
+    """Two ranges that go together have different lengths."""
+
+    template = (
+        "{first} has {n_first} cells and {second} has {n_second}: "
+        "ranges of equal length are needed, one value for each."
+    )
+
+
+class UnknownBasis(NotUnderstood):
+    """An equilibrium constant's basis is not in the closed list."""
+
+    template = "{argument} is {given!r}: the bases are {known}."
+
+
+class UnknownVapourForm(NotUnderstood):
+    """A vapour-pressure form is not in the closed list."""
+
+    template = (
+        "form is {given!r}, {why}: write five-constant, or Antoine with lg or ln, a pressure unit and "
+        "a temperature unit, such as Antoine lg mmHg degC."
+    )
+
+
+class WrongCount(NotUnderstood):
+    """A range has the wrong number of constants."""
+
+    template = "{argument} has {given} numbers: {needed} are needed."
+
+
+class NoVapourPressure(NotValid):
+    """The constants give no vapour pressure, or no temperature, here."""
+
+    template = "{what}: {why}"
+
+
+class OutsideConstantsRange(NotValid):
+    """A temperature lies outside the range given with the constants."""
+
+    template = (
+        "t is {given} K, and the constants hold from {low} K to {high} K. "
+        "Leave the two limits out of constants to extrapolate, with a caution."
+    )
+
+
+class RequiredHere(NotUnderstood):
+    """An optional argument is needed by another one."""
+
+    template = "{argument} is missing: {needed_by} needs {meaning}."
+
+
+# --- workbook files ------------------------------------------------------------------------------
+
+
+class WorkbookRefused(NotUnderstood):
+    """A workbook file is not read any further."""
+
+
+class NotAWorkbook(WorkbookRefused):
+    """The file is missing or of another kind."""
+
+    template = (
+        "{path} cannot be read as a workbook: {text}. "
+        "Give an .xlsx or .xlsm file, saved without a password by a spreadsheet."
+    )
+
+
+class WorkbookTooLarge(WorkbookRefused):
+    """A size, a count or a ratio is past its limit."""
+
+    template = "{path} is refused: it has {text}, and the limit is {limit}. Split the workbook."
+
+
+class HostileArchive(WorkbookRefused):
+    """The archive is built as no spreadsheet builds one."""
+
+    template = "{path} is refused: {text}. No spreadsheet writes that; save the workbook again from one."
+
+
+class DamagedWorkbook(WorkbookRefused):
+    """The file is a workbook that cannot be read to its end."""
+
+    template = "{path} is damaged: {text}. Open it in a spreadsheet, let it repair the file, save it again."
+
+
+class NoSuchCell(WorkbookRefused):
+    """A cell that was asked for is not there, or has no call to explain."""
+
+    template = "{cell}: {text}."
+
+
+class OutputRefused(WorkbookRefused):
+    """The output cannot be written."""
+
+    template = "{path} is not written: {text}. The input is unchanged; name another file with -o."

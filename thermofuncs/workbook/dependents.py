@@ -1,0 +1,101 @@
+"""Which formulas depend on which cells."""
+
+from __future__ import annotations
+
+from collections import defaultdict
+from collections.abc import Iterable, Mapping
+
+import numpy as np
+
+from thermofuncs.workbook.addresses import Area, Place
+from thermofuncs.workbook.rewriting import Prepared
+
+
+class Dependencies:
+    """The references between the formulas of a workbook.
+
+    Parameters
+    ----------
+    formulas : mapping of Place to Prepared.
+    """
+
+    def __init__(self, formulas: Mapping[Place, Prepared]) -> None:
+        self.formulas = formulas
+        self._readers: dict[Place, list[Place]] = defaultdict(list)
+        wide: dict[str, list[tuple[Area, Place]]] = defaultdict(list)
+        self._writers: dict[str, list[tuple[Area, Place]]] = defaultdict(list)
+        self._arrays: dict[str, list[tuple[Area, Place]]] = defaultdict(list)
+        for place, formula in formulas.items():
+            for area in formula.areas:
+                if area.single:
+                    self._readers[Place(area.sheet, area.top, area.left)].append(place)
+                else:
+                    wide[area.sheet].append((area, place))
+            self._writers[place.sheet].append((formula.stored.area, place))
+            if not formula.stored.area.single:
+                self._arrays[place.sheet].append((formula.stored.area, place))
+        self._wide = {sheet: _Boxes(areas) for sheet, areas in wide.items()}
+        self._written = {sheet: _Boxes(areas) for sheet, areas in self._writers.items()}
+        self._array_boxes = {sheet: _Boxes(areas) for sheet, areas in self._arrays.items()}
+
+    def dependents(self, seeds: Iterable[Place]) -> set[Place]:
+        """Every formula that reads one of these cells, directly or through others."""
+        found: set[Place] = set()
+        waiting = [self.formulas[seed].stored.area for seed in seeds]
+        while waiting:
+            area = waiting.pop()
+            readers = self._wide[area.sheet].meeting(area) if area.sheet in self._wide else []
+            if area.single:
+                readers = readers + self._readers.get(Place(area.sheet, area.top, area.left), [])
+            else:
+                for place, single in self._readers.items():
+                    if place.sheet == area.sheet and area.covers(place.row, place.column):
+                        readers = readers + single
+            for reader in readers:
+                if reader not in found:
+                    found.add(reader)
+                    waiting.append(self.formulas[reader].stored.area)
+        return found
+
+    def precedents(self, seeds: Iterable[Place]) -> set[Place]:
+        """Every formula that one of these reads, directly or through others."""
+        found: set[Place] = set()
+        seen: set[Area] = set()
+        waiting = list(seeds)
+        while waiting:
+            for area in self.formulas[waiting.pop()].areas:
+                if area in seen:
+                    continue
+                seen.add(area)
+                for place in self._inside(area):
+                    if place not in found:
+                        found.add(place)
+                        waiting.append(place)
+        return found
+
+    def _inside(self, area: Area) -> list[Place]:
+        if not area.single:
+            boxes = self._written.get(area.sheet)
+            return [] if boxes is None else boxes.meeting(area)
+        place = Place(area.sheet, area.top, area.left)
+        if place in self.formulas:
+            return [place]
+        boxes = self._array_boxes.get(area.sheet)
+        return [] if boxes is None else boxes.meeting(area)
+
+
+class _Boxes:
+    """Rectangles of one sheet, each with the formula it belongs to."""
+
+    def __init__(self, areas: list[tuple[Area, Place]]) -> None:
+        corners = np.array([area[1:] for area, _ in areas], dtype=np.int64).reshape(-1, 4)
+        self.top, self.left, self.bottom, self.right = corners.T
+        self.places = [place for _, place in areas]
+
+    def meeting(self, area: Area) -> list[Place]:
+        """The formulas of the rectangles that share a cell with ``area``."""
+        hit = (
+            (self.top <= area.bottom) & (self.bottom >= area.top)
+            & (self.left <= area.right) & (self.right >= area.left)
+        )
+        return [self.places[number] for number in np.flatnonzero(hit)]
