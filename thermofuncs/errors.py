@@ -340,3 +340,74 @@ class OutputRefused(WorkbookRefused):
     """The output cannot be written."""
 
     template = "{path} is not written: {text}. The input is unchanged; name another file with -o."
+
+
+# --- substances ----------------------------------------------------------------------------------
+
+
+class UnknownSubstance(NotAvailable):
+    """A substance is in neither the data table nor the bundled data."""
+
+    template = (
+        "{argument}: {given!r} is not in the data.{near} A row for it in a data table of your own supplies it."
+    )
+
+
+class AmbiguousSubstance(NotAvailable):
+    """Several substances fit what was written."""
+
+    template = "{argument}: {given!r} can be {candidates}: write the one that is meant."
+
+
+class PhaseNotAvailable(NotAvailable):
+    """The data has the formula, but not in the phase that was asked for."""
+
+    template = (
+        "{argument}: {given!r} is not in the data, which has {candidates}.{remark} "
+        "A row for it in a data table of your own supplies it."
+    )
+
+
+class OnlyAnEnthalpy(NotAvailable):
+    """The publisher gives no heat capacity."""
+
+    template = (
+        "{argument}: {given!r} has only an enthalpy at one temperature in the data, no heat capacity and no "
+        "entropy. A row for it in a data table of your own supplies it."
+    )
+
+
+class OnlyGibbsEnergy(NotAvailable):
+    """An ion whose source gives ΔfG° alone."""
+
+    template = (
+        "{substance} has only ΔfG° at 298.15 K in the data, so it has no {property}. "
+        "A row for it in a data table of your own supplies it."
+    )
+
+
+class InertCopy(NotAvailable):
+    """A record that stands for a feed which does not react."""
+
+    template = (
+        "{argument}: {given!r} is a copy for combustion calculations that is kept from reacting; "
+        "write {original}."
+    )
+
+
+class NoReferenceElement(NotAvailable):
+    """An element has no reference phase in the data."""
+
+    template = "{argument}: the data has no reference phase of the element {given!r}."
+
+
+class NoAtomicMass(NotUnderstood):
+    """A symbol is no element, or an element without a standard atomic mass."""
+
+    template = "{argument} has {given!r}, which is no element with an atomic mass in the data."
+
+
+class BadDataTable(NotUnderstood):
+    """Cells of a user's data table cannot be used."""
+
+    template = "{argument}: {faults}"

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections import defaultdict
+from collections import defaultdict, deque
 from collections.abc import Iterable, Mapping
 
 import numpy as np
@@ -21,41 +21,46 @@ class Dependencies:
 
     def __init__(self, formulas: Mapping[Place, Prepared]) -> None:
         self.formulas = formulas
-        self._readers: dict[Place, list[Place]] = defaultdict(list)
+        self._readers: dict[Place, list[Place]] = {}
         wide: dict[str, list[tuple[Area, Place]]] = defaultdict(list)
-        self._writers: dict[str, list[tuple[Area, Place]]] = defaultdict(list)
-        self._arrays: dict[str, list[tuple[Area, Place]]] = defaultdict(list)
+        writers: dict[str, list[tuple[Area, Place]]] = defaultdict(list)
+        arrays: dict[str, list[tuple[Area, Place]]] = defaultdict(list)
         for place, formula in formulas.items():
             for area in formula.areas:
                 if area.single:
-                    self._readers[Place(area.sheet, area.top, area.left)].append(place)
+                    self._readers.setdefault(Place(area.sheet, area.top, area.left), []).append(place)
                 else:
                     wide[area.sheet].append((area, place))
-            self._writers[place.sheet].append((formula.stored.area, place))
+            writers[place.sheet].append((formula.stored.area, place))
             if not formula.stored.area.single:
-                self._arrays[place.sheet].append((formula.stored.area, place))
+                arrays[place.sheet].append((formula.stored.area, place))
         self._wide = {sheet: _Boxes(areas) for sheet, areas in wide.items()}
-        self._written = {sheet: _Boxes(areas) for sheet, areas in self._writers.items()}
-        self._array_boxes = {sheet: _Boxes(areas) for sheet, areas in self._arrays.items()}
+        self._written = {sheet: _Boxes(areas) for sheet, areas in writers.items()}
+        self._array_boxes = {sheet: _Boxes(areas) for sheet, areas in arrays.items()}
 
-    def dependents(self, seeds: Iterable[Place]) -> set[Place]:
-        """Every formula that reads one of these cells, directly or through others."""
-        found: set[Place] = set()
-        waiting = [self.formulas[seed].stored.area for seed in seeds]
+    def dependents(self, seeds: Iterable[Place]) -> dict[Place, Place]:
+        """Every formula that reads one of these cells, directly or through others, with the seed it leads to."""
+        found: dict[Place, Place] = {}
+        waiting = deque((seed, seed) for seed in seeds)
         while waiting:
-            area = waiting.pop()
-            readers = self._wide[area.sheet].meeting(area) if area.sheet in self._wide else []
-            if area.single:
-                readers = readers + self._readers.get(Place(area.sheet, area.top, area.left), [])
-            else:
-                for place, single in self._readers.items():
-                    if place.sheet == area.sheet and area.covers(place.row, place.column):
-                        readers = readers + single
-            for reader in readers:
+            place, seed = waiting.popleft()
+            for reader in self._reading(self.formulas[place].stored.area):
                 if reader not in found:
-                    found.add(reader)
-                    waiting.append(self.formulas[reader].stored.area)
+                    found[reader] = seed
+                    waiting.append((reader, seed))
         return found
+
+    def _reading(self, area: Area) -> list[Place]:
+        readers = self._wide[area.sheet].meeting(area) if area.sheet in self._wide else []
+        if area.rows * area.columns <= len(self._readers):
+            for row in range(area.top, area.bottom + 1):
+                for column in range(area.left, area.right + 1):
+                    readers = readers + self._readers.get(Place(area.sheet, row, column), [])
+            return readers
+        for place, single in self._readers.items():
+            if place.sheet == area.sheet and area.covers(place.row, place.column):
+                readers = readers + single
+        return readers
 
     def precedents(self, seeds: Iterable[Place]) -> set[Place]:
         """Every formula that one of these reads, directly or through others."""
