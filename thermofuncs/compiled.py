@@ -62,6 +62,21 @@ def _from_row(
 
 
 @lru_cache(maxsize=BOUND)
+def electrode_reaction(text: str, data: UserData | None, atm: bool, extrapolate: bool) -> Combination:
+    """The table of a reaction in which a bare electron stands for ½ H₂(g) − H⁺(aq). Parameters as above."""
+    equation = parse_equation(text)
+    electrons = sum(float(c) for c, species in equation.net() if species == ELECTRON)
+    if not electrons:
+        return reaction(text, data, atm, extrapolate)
+    members = [(c, find_substance(s, data)) for c, s in equation.net() if s != ELECTRON]
+    check_balance(equation, {s: x for (_, s), (_, x) in zip(
+        [(c, s) for c, s in equation.net() if s != ELECTRON], members, strict=True)})
+    parts = [Member(float(c), s) for c, s in members]
+    parts += [Member(0.5 * electrons, find_substance("H2(g)")), Member(-electrons, find_substance("H+(aq)"))]
+    return Combination(text, parts, atm=atm, extrapolate=extrapolate)
+
+
+@lru_cache(maxsize=BOUND)
 def substance(text: str, data: UserData | None, atm: bool, extrapolate: bool) -> Combination:
     """The table of one substance. Parameters as in reaction."""
     one = find_substance(text, data, "substance")

@@ -200,6 +200,12 @@ def lg_k(table: Combination, temperature: float, record: Record | None = None) -
     return value
 
 
+def outside_double(natural: float) -> OutsideDouble:
+    """The error for a K, of natural logarithm ``natural``, that no number can hold."""
+    where = "above" if natural > 0 else "below"
+    return OutsideDouble(what="K", lnk=f"{natural:.6g}", where=where, use="LNK")
+
+
 def equilibrium_constant(table: Combination, temperature: float, record: Record | None = None) -> float:
     """The standard equilibrium constant. Parameters as in ln_k.
 
@@ -209,9 +215,7 @@ def equilibrium_constant(table: Combination, temperature: float, record: Record 
     """
     natural = ln_k(table, temperature, record)
     if not SMALLEST_LN_K <= natural <= LARGEST_LN_K:
-        raise OutsideDouble(
-            what="K", lnk=f"{natural:.6g}", where="above" if natural > 0 else "below", use="LNK"
-        )
+        raise outside_double(natural)
     value = math.exp(natural)
     if record is not None:
         record.step("K", "exp(ln K)", f"exp({shown(natural)})", value, "1")
