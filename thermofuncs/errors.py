@@ -411,3 +411,96 @@ class BadDataTable(NotUnderstood):
     """Cells of a user's data table cannot be used."""
 
     template = "{argument}: {faults}"
+
+
+# --- the catalogue ---------------------------------------------------------------------------------
+
+
+class TooManyArguments(NotUnderstood):
+    """More arguments than the function has."""
+
+    template = "{given} arguments were given, at most {most} are taken: {function}."
+
+
+class ShapesDiffer(NotUnderstood):
+    """Ranges whose shapes do not go together."""
+
+    template = "The ranges do not fit each other: {shapes}. Equal shapes, or a column against a row, are needed."
+
+
+class NotANumber(NotValid):
+    """The result is no finite number."""
+
+    template = "{function} has no finite value for these arguments."
+
+
+class NothingFound(NotAvailable):
+    """A search without a match."""
+
+    template = 'Nothing matches "{text}".'
+
+
+class OneCallOnly(NotUnderstood):
+    """The working of something that has none."""
+
+    template = "There is no working of {function}: {why}"
+
+
+# --- states and activities -------------------------------------------------------------------------
+
+
+class NoRoot(NotValid):
+    """K does not have the value between the limits."""
+
+    template = "K of {what} is not {k} anywhere from {low} to {high} K: {ends}."
+
+
+class NotPositive(NotValid):
+    """A value that must be positive."""
+
+    template = "{argument} = {given} must be positive and finite."
+
+
+class BareElectron(NotUnderstood):
+    """A bare electron where only data counts."""
+
+    template = "A bare e- is an electron in BALANCED, IMBALANCE and EMF only: write e-(g) for the gas of the data."
+
+
+class UserReactionBasis(NotUnderstood):
+    """The standard pressure of a whole-reaction row cannot be moved."""
+
+    template = "options has atm, but {what} is a whole row of the data table whose phases are not all written."
+
+
+class BadActivityTable(NotUnderstood):
+    """A cell of the activities that is no activity."""
+
+    template = (
+        "activities of {species}: {given} is neither a number nor a quantity of pressure, molality or"
+        ' concentration, such as "0.3 atm"; two columns are needed, species and value.'
+    )
+
+
+class ActivityNotPositive(NotValid):
+    """An activity of zero or below."""
+
+    template = "The activity of {species} is {given}: it must be positive, as its logarithm is taken."
+
+
+class ActivityMissing(NotAvailable):
+    """A gas or solute without an activity."""
+
+    template = "activities has no value for {species}: a gas or solute needs one; only a pure phase may be left out."
+
+
+class StrangeActivity(NotUnderstood):
+    """A species of the table that the reaction does not hold once."""
+
+    template = "activities has {species}, which is not one of the reaction's species, or stands twice: {known}."
+
+
+class ElectronCount(NotValid):
+    """The number of electrons does not fit the reaction."""
+
+    template = "electrons = {given} does not fit: {needed} is needed."

@@ -4,8 +4,9 @@ from __future__ import annotations
 
 import math
 import posixpath
+from collections.abc import Callable
 from dataclasses import dataclass, field
-from datetime import datetime, timezone
+from datetime import UTC, datetime
 from pathlib import Path
 from typing import TYPE_CHECKING
 
@@ -19,6 +20,8 @@ if TYPE_CHECKING:
     from xml.etree.ElementTree import Element
 
 Stored = float | str | bool | CellError | None
+
+_TEXTS = frozenset({"str", "inlineStr"})
 
 
 @dataclass(frozen=True, slots=True)
@@ -200,8 +203,9 @@ def _read_names_and_sheets(book: Book, root: Element, part: str) -> None:
 
 
 def _shared_strings(package: Package, relations: dict[str, tuple[str, str, bool]]) -> list[str]:
-    part = next((p for kind, p, outside in relations.values() if kind == "sharedStrings" and not outside), None)
-    if part is None or part not in package:
+    inside = {kind: part for kind, part, outside in relations.values() if not outside}
+    part = inside.get("sharedStrings", "")
+    if part not in package:
         return []
     strings = []
     for item in tree(package, part):
@@ -222,7 +226,9 @@ def _read_table(book: Book, sheet: Sheet, part: str) -> None:
     if area is None or not name:
         return
     headers = tuple(
-        decoded(element.get("name", "")) for element in root.iter() if local_name(element.tag) == "tableColumn"
+        decoded(element.get("name", ""))
+        for element in root.iter()
+        if local_name(element.tag) == "tableColumn"
     )
     header_rows, totals_rows = root.get("headerRowCount", "1"), root.get("totalsRowCount", "0")
     book.tables[name.casefold()] = Table(
@@ -279,33 +285,34 @@ class _SheetLoader:
         text = cell.text
         if text is None or (cell.kind == "n" and not text.strip()):
             return None
+        readers: dict[str, Callable[[str], Stored]] = {
+            "s": self._shared_string, "b": _truth, "e": CellError, "str": decoded, "inlineStr": decoded,
+            "d": self._serial,
+        }
         try:
-            match cell.kind:
-                case "s":
-                    return self.strings[int(text)]
-                case "b":
-                    return text.strip() in {"1", "true"}
-                case "e":
-                    return CellError(text.strip())
-                case "str" | "inlineStr":
-                    return decoded(text)
-                case "d":
-                    return self._serial(text.strip())
-                case _:
-                    number = float(text)
+            return readers.get(cell.kind, _number)(text if cell.kind in _TEXTS else text.strip())
         except (ValueError, IndexError) as error:
             place = Place(self.sheet.name, cell.row, cell.column)
             raise DamagedWorkbook(
                 path=self.book.package.path.name, text=f"{place} has the stored value {text[:40]!r}"
             ) from error
-        if not math.isfinite(number):
-            return CellError("#NUM!")
-        return number
+
+    def _shared_string(self, text: str) -> str:
+        if not text.isdecimal():
+            raise ValueError
+        return self.strings[int(text)]
 
     def _serial(self, text: str) -> float:
         moment = datetime.fromisoformat(text)
-        moment = moment.replace(tzinfo=moment.tzinfo or timezone.utc)
-        first = datetime(1904, 1, 1, tzinfo=timezone.utc) if self.book.date_1904 else datetime(
-            1899, 12, 30, tzinfo=timezone.utc
-        )
-        return (moment - first).total_seconds() / 86400
+        moment = moment.replace(tzinfo=moment.tzinfo or UTC)
+        year, month, day = (1904, 1, 1) if self.book.date_1904 else (1899, 12, 30)
+        return (moment - datetime(year, month, day, tzinfo=UTC)).total_seconds() / 86400
+
+
+def _truth(text: str) -> bool:
+    return text in {"1", "true"}
+
+
+def _number(text: str) -> Stored:
+    number = float(text)
+    return number if math.isfinite(number) else CellError("#NUM!")

@@ -39,7 +39,7 @@ class Dependencies:
         self._array_boxes = {sheet: _Boxes(areas) for sheet, areas in arrays.items()}
 
     def dependents(self, seeds: Iterable[Place]) -> dict[Place, Place]:
-        """Every formula that reads one of these cells, directly or through others, with the seed it leads to."""
+        """Every formula that reads one of these cells, at once or not, and the cell that it leads to."""
         found: dict[Place, Place] = {}
         waiting = deque((seed, seed) for seed in seeds)
         while waiting:

@@ -179,7 +179,8 @@ class Evaluation:
         numbers = range(1, len(sheets) + 1)
         parts = {
             "[Content_Types].xml": f'{_HEAD}<Types xmlns="{_PACKAGE}/content-types">'
-            '<Default Extension="rels" ContentType="application/vnd.openxmlformats-package.relationships+xml"/>'
+            '<Default Extension="rels" '
+            'ContentType="application/vnd.openxmlformats-package.relationships+xml"/>'
             '<Default Extension="xml" ContentType="application/xml"/>'
             f'<Override PartName="/xl/workbook.xml" ContentType="{_TYPES}.sheet.main+xml"/>'
             + "".join(

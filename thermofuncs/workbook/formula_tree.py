@@ -82,7 +82,8 @@ class _Open:
                 self.end_argument()
             return Call(self.spelled, tuple(self.arguments))
         if self.kind == "array":
-            return ArrayConstant("{" + "".join(i.text for i in self.items if isinstance(i, Text | Operand)) + "}")
+            inner = "".join(item.text for item in self.items if isinstance(item, Text | Operand))
+            return ArrayConstant("{" + inner + "}")
         return Group(tuple(self.items))
 
 

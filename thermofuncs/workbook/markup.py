@@ -57,7 +57,8 @@ def _document_type(package: Package, part: str) -> HostileArchive:
 
 
 def _not_well_formed(package: Package, part: str, reason: str) -> DamagedWorkbook:
-    return DamagedWorkbook(path=package.path.name, text=f"the part {part!r} is not well-formed XML ({reason})")
+    text = f"the part {part!r} is not well-formed XML ({reason})"
+    return DamagedWorkbook(path=package.path.name, text=text)
 
 
 def decoded(text: str) -> str:
@@ -171,7 +172,8 @@ class SheetReader:
         if self.data.startswith((b"\xff\xfe", b"\xfe\xff")) or (
             match is not None and match[1].lower() not in {b"utf-8", b"us-ascii"}
         ):
-            raise DamagedWorkbook(path=self.package.path.name, text=f"the part {self.part!r} is not in UTF-8")
+            text = f"the part {self.part!r} is not in UTF-8"
+            raise DamagedWorkbook(path=self.package.path.name, text=text)
         self.parser = expat.ParserCreate(namespace_separator="}")
         self.parser.buffer_text = True
         self.parser.StartElementHandler = self._start
@@ -202,14 +204,18 @@ class SheetReader:
                     "", attributes.get("t", "normal"), attributes.get("ref", ""), attributes.get("si", "")
                 )
                 self._text = []
-            elif (depth == 4 and name == "v") or (name == "t" and "is" in self._path and "rPh" not in self._path):
+            elif (depth == 4 and name == "v") or (name == "t" and self._in_inline_text()):
                 self._text = []
+
+    def _in_inline_text(self) -> bool:
+        return "is" in self._path and "rPh" not in self._path
 
     def _number(self, text: str | None, implied: int) -> int:
         if text is None:
             return implied
         if not text.isdecimal() or not 1 <= int(text) <= LAST_ROW:
-            raise DamagedWorkbook(path=self.package.path.name, text=f"{self.part!r} has a row numbered {text!r}")
+            problem = f"{self.part!r} has a row numbered {text[:20]!r}"
+            raise DamagedWorkbook(path=self.package.path.name, text=problem)
         return int(text)
 
     def _new_cell(self, attributes: dict[str, str]) -> RawCell:
@@ -230,9 +236,8 @@ class SheetReader:
             text = f"{self.part!r} has a row with more than {LAST_COLUMN} cells"
             raise DamagedWorkbook(path=self.package.path.name, text=text)
         self._column = column
-        return RawCell(
-            row, column, attributes.get("t", "n"), dynamic="cm" in attributes, start=self.parser.CurrentByteIndex
-        )
+        start = self.parser.CurrentByteIndex
+        return RawCell(row, column, attributes.get("t", "n"), dynamic="cm" in attributes, start=start)
 
     def _characters(self, text: str) -> None:
         if self._text is not None:

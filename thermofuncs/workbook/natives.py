@@ -11,27 +11,41 @@ import numpy as np
 # One value in, one value out. The evaluator takes these for one value alone, so that EXP(A1:A9)
 # inside SUMPRODUCT is an error and ISNUMBER(A1:A9) is the answer for A1: measured by a test.
 ELEMENTWISE = frozenset(
-    """ABS ACOS ACOSH ASIN ASINH ATAN ATAN2 ATANH CEILING COMBIN COS COSH DAY DEGREES ERF ERFC EVEN EXP FACT
-    FIND FLOOR GAMMALN HOUR INT ISBLANK ISERR ISERROR ISEVEN ISLOGICAL ISNA ISNONTEXT ISNUMBER ISODD ISTEXT
-    LEFT LEN LN LOG LOG10 LOWER MID MINUTE MOD MONTH MROUND NOT ODD POWER QUOTIENT RADIANS RIGHT ROUND
-    ROUNDDOWN ROUNDUP SEARCH SECOND SIGN SIN SINH SQRT SQRTPI SUBSTITUTE TAN TANH TEXT TRIM TRUNC UPPER
-    VALUE YEAR""".split()
+    {
+        "ABS", "ACOS", "ACOSH", "ASIN", "ASINH", "ATAN", "ATAN2", "ATANH", "CEILING", "COMBIN", "COS",
+        "COSH", "DAY", "DEGREES", "ERF", "ERFC", "EVEN", "EXP", "FACT", "FIND", "FLOOR", "GAMMALN", "HOUR",
+        "INT", "ISBLANK", "ISERR", "ISERROR", "ISEVEN", "ISLOGICAL", "ISNA", "ISNONTEXT", "ISNUMBER",
+        "ISODD", "ISTEXT", "LEFT", "LEN", "LN", "LOG", "LOG10", "LOWER", "MID", "MINUTE", "MOD", "MONTH",
+        "MROUND", "NOT", "ODD", "POWER", "QUOTIENT", "RADIANS", "RIGHT", "ROUND", "ROUNDDOWN", "ROUNDUP",
+        "SEARCH", "SECOND", "SIGN", "SIN", "SINH", "SQRT", "SQRTPI", "SUBSTITUTE", "TAN", "TANH", "TEXT",
+        "TRIM", "TRUNC", "UPPER", "VALUE", "YEAR",
+    }
 )
 # These look at an error instead of handing it on.
-_TAKES_ERRORS = frozenset({"ISBLANK", "ISERR", "ISERROR", "ISLOGICAL", "ISNA", "ISNONTEXT", "ISNUMBER", "ISTEXT"})
+_TAKES_ERRORS = frozenset(
+    {"ISBLANK", "ISERR", "ISERROR", "ISLOGICAL", "ISNA", "ISNONTEXT", "ISNUMBER", "ISTEXT"}
+)
 # Their arguments are arrays without being entered as an array formula.
 FORCES_ARRAYS = frozenset(
-    """SUMPRODUCT MMULT MINVERSE MDETERM LINEST LOGEST TREND GROWTH LOOKUP FREQUENCY SUMX2MY2 SUMX2PY2 SUMXMY2
-    CORREL PEARSON SLOPE INTERCEPT RSQ STEYX FORECAST FORECAST.LINEAR COVAR COVARIANCE.P COVARIANCE.S MODE PROB
-    FILTER SORT SORTBY UNIQUE XLOOKUP XMATCH LET LAMBDA""".split()
+    {
+        "CORREL", "COVAR", "COVARIANCE.P", "COVARIANCE.S", "FILTER", "FORECAST", "FORECAST.LINEAR",
+        "FREQUENCY", "GROWTH", "INTERCEPT", "LAMBDA", "LET", "LINEST", "LOGEST", "LOOKUP", "MDETERM",
+        "MINVERSE", "MMULT", "MODE", "PEARSON", "PROB", "RSQ", "SLOPE", "SORT", "SORTBY", "STEYX",
+        "SUMPRODUCT", "SUMX2MY2", "SUMX2PY2", "SUMXMY2", "TREND", "UNIQUE", "XLOOKUP", "XMATCH",
+    }
 )
 BRANCHES = frozenset({"IF", "IFERROR", "IFNA", "IFS", "CHOOSE", "SWITCH"})
 GIVES_ARRAYS = frozenset(
-    """TRANSPOSE MMULT MINVERSE MUNIT LINEST LOGEST TREND GROWTH FREQUENCY FILTER SORT SORTBY UNIQUE SEQUENCE
-    RANDARRAY INDEX OFFSET INDIRECT XLOOKUP TAKE DROP CHOOSECOLS CHOOSEROWS HSTACK VSTACK TOCOL TOROW LET
-    VLOOKUP HLOOKUP LOOKUP MATCH XMATCH""".split()
+    {
+        "CHOOSECOLS", "CHOOSEROWS", "DROP", "FILTER", "FREQUENCY", "GROWTH", "HLOOKUP", "HSTACK", "INDEX",
+        "INDIRECT", "LET", "LINEST", "LOGEST", "LOOKUP", "MATCH", "MINVERSE", "MMULT", "MUNIT", "OFFSET",
+        "RANDARRAY", "SEQUENCE", "SORT", "SORTBY", "TAKE", "TOCOL", "TOROW", "TRANSPOSE", "TREND", "UNIQUE",
+        "VLOOKUP", "VSTACK", "XLOOKUP", "XMATCH",
+    }
 )
-VOLATILE = frozenset({"NOW", "TODAY", "RAND", "RANDBETWEEN", "RANDARRAY", "OFFSET", "INDIRECT", "CELL", "INFO"})
+VOLATILE = frozenset(
+    {"NOW", "TODAY", "RAND", "RANDBETWEEN", "RANDARRAY", "OFFSET", "INDIRECT", "CELL", "INFO"}
+)
 # What these point to is known only when they are evaluated.
 DYNAMIC = frozenset({"OFFSET", "INDIRECT"})
 
@@ -178,7 +192,8 @@ class ArrayMap:
             column = chr(65 + number)
             cells.append(f"{column}1")
             if isinstance(value, dict):
-                self._scratch.set_formula("S", 1, number + 1, _ERROR_FORMULAS.get(str(value.get("kind")), "=1/0"))
+                formula = _ERROR_FORMULAS.get(str(value.get("kind")), "=1/0")
+                self._scratch.set_formula("S", 1, number + 1, formula)
             else:
                 self._scratch.set_value("S", 1, number + 1, value)
         self._scratch.set_formula("S", 2, 1, f"={name}({','.join(cells)})")

@@ -25,6 +25,7 @@ from thermofuncs.errors import (
 
 _COMPOUND_FILE = bytes.fromhex("D0CF11E0A1B11AE1")
 _ENCRYPTED = 0x1
+_NOT_IN_NAMES = (":", "\\", "\0")
 _METHODS = (zipfile.ZIP_STORED, zipfile.ZIP_DEFLATED)
 
 
@@ -203,7 +204,7 @@ def _checked_names(path: Path, listed: list[zipfile.ZipInfo]) -> dict[str, zipfi
     seen: set[str] = set()
     for entry in listed:
         name = entry.orig_filename
-        if name.startswith(("/", "\\")) or ":" in name or "\\" in name or "\0" in name or ".." in name.split("/"):
+        if name.startswith("/") or ".." in name.split("/") or any(mark in name for mark in _NOT_IN_NAMES):
             raise HostileArchive(path=path.name, text=f"the part name {name!r} leads out of the archive")
         if name.casefold() in seen:
             raise HostileArchive(path=path.name, text=f"the part {name!r} is there twice")

@@ -143,7 +143,8 @@ def output_path(source: Path, wanted: Path | None, *, overwrite: bool = False) -
     target = free_name(source) if wanted is None else wanted
     check_target(source, target)
     if target.exists() and not overwrite:
-        raise OutputRefused(path=str(target), text="a file of that name is there already, and --overwrite is not given")
+        text = "a file of that name is there already, and --overwrite is not given"
+        raise OutputRefused(path=str(target), text=text)
     return target
 
 
@@ -271,10 +272,12 @@ class _Work:
         used = self.native_fallback.keys() & (self.targets | self.dependencies.precedents(self.targets))
         reasons = self.kept | {place: self.native_fallback[place] for place in used}
         result.kept = [Kept(place, reasons[place]) for place in sorted(reasons, key=in_order)]
-        result.volatile = sorted(
-            (place for place in self.evaluated if self.formulas[place].volatile), key=in_order
-        )
+        volatile = {place for place in self.evaluated if self.formulas[place].volatile}
+        volatile |= set(self.dependencies.dependents(volatile)) & self.evaluated & self.targets
+        result.volatile = sorted(volatile, key=in_order)
         result.differing = self._differing(in_order)
+        result.changes.sort(key=lambda change: in_order(change.place))
+        result.errors.sort(key=lambda error: in_order(error.place))
 
     def _collect_cell(self, place: Place) -> None:
         formula = self.formulas[place]
@@ -300,8 +303,9 @@ class _Work:
         rows, columns = self.evaluation.spilled(place)
         if (rows, columns) != (area.rows, area.columns):
             self.result.notes.append(
-                f"{place} now fills {rows} x {columns} cells and its stored range is {area.rows} x {area.columns}: "
-                "only the stored range was written; open the copy in the spreadsheet to spill it anew."
+                f"{place} now fills {rows} x {columns} cells, and its stored range is "
+                f"{area.rows} x {area.columns}: only the stored range was written. "
+                "Open the copy in the spreadsheet to spill it anew."
             )
 
     def _sentence(self, place: Place, value: CellError) -> str:

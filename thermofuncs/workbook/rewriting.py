@@ -17,7 +17,6 @@ from thermofuncs.workbook.addresses import Area, Place, Reference, parse_referen
 from thermofuncs.workbook.book import Book, StoredFormula
 from thermofuncs.workbook.formula_tree import (
     LONGEST,
-    ArrayConstant,
     Call,
     Group,
     Node,
@@ -130,7 +129,9 @@ class Rewriter:
     def __init__(self, book: Book, names: Collection[str], tables: Collection[str]) -> None:
         self.book, self.names, self.tables = book, names, tables
         self.sites: list[Site] = []
-        self._prepared = Prepared(Place("", 1, 1), StoredFormula("", Place("", 1, 1), "", Area("", 1, 1, 1, 1), False, None))
+        nowhere = Place("", 1, 1)
+        nothing = StoredFormula("", nowhere, "normal", Area("", 1, 1, 1, 1), dynamic=False, value=None)
+        self._prepared = Prepared(nowhere, nothing)
 
     def prepare(self, place: Place, stored: StoredFormula) -> Prepared:
         """The formula of a cell, ready for the evaluator."""
@@ -150,12 +151,11 @@ class Rewriter:
         try:
             items = formula_tree(stored.text)
             text = self._whole(items, context, None if stored.kind == "array" and not legacy else fit)
-            if len(text) > LONGEST:
-                message = "it is too long once its names are written out"
-                raise UnreadableFormula(message)
-            if not prepared.reasons:
-                formualizer.parse("=" + text)
             prepared.text = "=" + text
+            if len(text) > LONGEST:
+                self._reason("it is too long once its names are written out")
+            elif not prepared.reasons:
+                formualizer.parse(prepared.text)
         except (UnreadableFormula, formualizer.ParserError, formualizer.TokenizerError) as problem:
             prepared.reasons.insert(0, f"its formula cannot be read: {problem}")
         return prepared
@@ -184,45 +184,42 @@ class Rewriter:
             context = context.inside(keep=False)
         pieces: list[str] = []
         array = False
-        skip = False
         for number, item in enumerate(items):
-            if skip:
-                skip = False
-                continue
-            after = items[number + 1] if number + 1 < len(items) else None
             before = items[number - 1] if number else None
-            spill = isinstance(after, Text) and after.text == "#"
-            explicit = isinstance(before, Text) and before.text == "@"
-            if isinstance(item, Text):
-                follows = isinstance(after, Operand) or (isinstance(after, Call) and called_name(after.spelled))
-                text, many = ("" if item.text == "@" and follows else item.text), False
-            elif isinstance(item, Operand) and spill:
-                text, many, skip = self._spill(item.text, context), True, True
-            elif isinstance(item, Operand) and explicit:
-                text, many = self._operand(item.text, context.inside(array=False, keep=False))
-            elif isinstance(item, Operand):
-                text, many = self._operand(item.text, context)
-            elif isinstance(item, Call) and explicit and called_name(item.spelled):
-                text, many = self._our_call(item, context, (1, 1))
-            else:
-                text, many = self._node(item, context)
+            after = items[number + 1] if number + 1 < len(items) else None
+            text, many = self._item(item, before, after, context)
             pieces.append(text)
             array = array or many
         return "".join(pieces), array
 
-    def _node(self, item: Node, context: _Context) -> tuple[str, bool]:
+    def _item(
+        self, item: Node, before: Node | None, after: Node | None, context: _Context
+    ) -> tuple[str, bool]:
+        """The text of one item between its neighbours, of which @ and # change what it means."""
+        if isinstance(item, Text):
+            taken = (item.text == "@" and (isinstance(after, Operand) or _calls_ours(after))) or (
+                item.text == "#" and isinstance(before, Operand)
+            )
+            return "" if taken else item.text, False
+        if isinstance(item, Operand):
+            if _is_text(after, "#"):
+                return self._spill(item.text, context), True
+            one = context.inside(array=False, keep=False) if _is_text(before, "@") else context
+            return self._operand(item.text, one)
         if isinstance(item, Group):
             text, array = self._expression(item.items, context)
             return f"({text})", array
         if isinstance(item, Call):
+            if _is_text(before, "@") and _calls_ours(item):
+                return self._our_call(item, context, (1, 1))
             return self._call(item, context)
-        if isinstance(item, ArrayConstant):
-            return item.text, True
-        return item.text, False
+        return item.text, True
 
     # --- operands ----------------------------------------------------------------------------------
 
-    def _operand(self, text: str, context: _Context) -> tuple[str, bool]:
+    def _operand(  # noqa: PLR0911 - one exit for each kind of operand
+        self, text: str, context: _Context
+    ) -> tuple[str, bool]:
         if text.casefold().startswith("_xlpm."):
             return text, context.array
         if _EXTERNAL.match(text):
@@ -235,13 +232,11 @@ class Rewriter:
             return "#REF!", False
         if sheet is not None:
             known = self.book.sheet_name(sheet)
-            if known is None and reference is None and sheet.casefold() == self.book.package.path.name.casefold():
-                return self._name(body, "", text, context)
             if known is None:
                 return "#REF!", False
-            reference = None if reference is None else reference._replace(sheet=known)
             if reference is None:
                 return self._name(body, known, text, context)
+            reference = reference._replace(sheet=known)
         if reference is not None:
             return self._reference(reference.moved(context.rows, context.columns), context)
         if "[" in text:
@@ -318,7 +313,9 @@ class Rewriter:
 
     # --- calls -------------------------------------------------------------------------------------
 
-    def _call(self, call: Call, context: _Context) -> tuple[str, bool]:
+    def _call(  # noqa: PLR0911 - one exit for each kind of call
+        self, call: Call, context: _Context
+    ) -> tuple[str, bool]:
         if called_name(call.spelled):
             return self._our_call(call, context, None)
         name = _LIBRARY_PREFIX.sub("", call.spelled).strip().upper()
@@ -389,6 +386,14 @@ class Rewriter:
         self.sites[number] = site
         self._prepared.sites.append(site)
         return f"{SITE}({','.join(texts)})", array and fit != (1, 1)
+
+
+def _is_text(item: Node | None, text: str) -> bool:
+    return isinstance(item, Text) and item.text == text
+
+
+def _calls_ours(item: Node | None) -> bool:
+    return isinstance(item, Call) and called_name(item.spelled) is not None
 
 
 def _as_written(items: Sequence[Node]) -> str:

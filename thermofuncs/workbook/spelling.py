@@ -16,12 +16,12 @@ _OURS = re.compile(
 
 @lru_cache(maxsize=4096)
 def called_name(spelled: str) -> str | None:
-    """The name in capitals that a call means, if it is spelled as one of ours.
+    r"""The name in capitals that a call means, if it is spelled as one of ours.
 
     Parameters
     ----------
     spelled : str. What stands before the bracket: ``TF.LNK``, ``TF_LNK``, ``_xldudf_TF_LNK``,
-        ``[1]!TF_LNK``, ``'C:\\add-ins\\tf.xlam'!TF_LNK``, in any case.
+        ``[1]!TF_LNK``, ``'C:\add-ins\\tf.xlam'!TF_LNK``, in any case.
 
     Returns
     -------

@@ -7,7 +7,9 @@ from dataclasses import dataclass
 
 from thermofuncs.workbook.addresses import Area
 
-_PARTS = re.compile(r"\[((?:'.|[^\[\]'])*)\]|([:,])|(@)|(\s+)|((?:'.|[^\[\]',:@\s])(?:'.|[^\[\]',:])*)", re.DOTALL)
+_PARTS = re.compile(
+    r"\[((?:'.|[^\[\]'])*)\]|([:,])|(@)|(\s+)|((?:'.|[^\[\]',:@\s])(?:'.|[^\[\]',:])*)", re.DOTALL
+)
 _STRUCTURED = re.compile(r"([^\[\]!]*)\[(.*)\]", re.DOTALL)
 _SPECIAL = frozenset({"#all", "#data", "#headers", "#totals", "#this row"})
 
@@ -79,7 +81,8 @@ def structured_area(text: str, tables: dict[str, Table], sheet: str, row: int, c
     if match[1]:
         table = tables.get(match[1].casefold())
     else:
-        table = next((t for t in tables.values() if t.area.sheet == sheet and t.area.covers(row, column)), None)
+        here = (t for t in tables.values() if t.area.sheet == sheet and t.area.covers(row, column))
+        table = next(here, None)
     if table is None:
         return None
     return _inside(table, match[2], row)
