@@ -504,3 +504,81 @@ class ElectronCount(NotValid):
     """The number of electrons does not fit the reaction."""
 
     template = "electrons = {given} does not fit: {needed} is needed."
+
+
+# --- formulas and equations ------------------------------------------------------------------------
+
+
+class FormulaNotRead(NotUnderstood):
+    """A text is no formula."""
+
+    template = '{argument} has "{given}", which is no formula: {why}.'
+
+
+class TwoReadings(NotUnderstood):
+    """A digit before a sign may be a count or a charge."""
+
+    template = '{argument} has "{given}", which has two readings: write {one} or {other}.'
+
+
+class FormulaTooLong(NotUnderstood):
+    """A formula over the limit."""
+
+    template = '{argument} has a formula of more than {most} characters, beginning "{given}".'
+
+
+class EquationTooLong(NotUnderstood):
+    """An equation over the limit."""
+
+    template = '{argument} has more than {most} characters, beginning "{given}".'
+
+
+class NotOneSeparator(NotUnderstood):
+    """An equation without exactly one sign between its sides."""
+
+    template = '{argument} "{given}" has {count} signs between its sides: one of =, ->, →, ⇌, <=> is needed.'
+
+
+class EmptySide(NotUnderstood):
+    """A side or a term of an equation is empty."""
+
+    template = '{argument} "{given}" has an empty place: a species is needed on each side and around each +.'
+
+
+class CoefficientNotRead(NotUnderstood):
+    """A coefficient that is no positive number."""
+
+    template = '{argument} has "{given}": a coefficient is a positive number such as 2, 0.5, 1/2 or ½.'
+
+
+class NothingReacts(NotUnderstood):
+    """Both sides are the same."""
+
+    template = '{argument} "{given}" has the same on both sides: nothing reacts.'
+
+
+class Unbalanced(NotUnderstood):
+    """Atoms or charge differ between the sides."""
+
+    template = '{argument} "{what}" does not balance: {missing}.'
+
+
+class CannotBalance(NotValid):
+    """No coefficients conserve atoms and charge."""
+
+    template = 'equation "{what}" cannot be balanced: {why}.'
+
+
+class SeveralReactions(NotValid):
+    """The coefficients are not unique."""
+
+    template = (
+        'equation "{what}" holds {count} independent reactions, so its coefficients are not unique:'
+        " fix some of them, or write the reactions apart."
+    )
+
+
+class WrongSide(NotValid):
+    """A species whose coefficient is not positive."""
+
+    template = 'equation "{what}" balances only with {species} on the other side or left out.'

@@ -73,7 +73,7 @@ def labels(name: str, phase: str) -> tuple[str, str]:
 
     ``AL2O3(a)`` gives ``Al2O3(a)`` and ``Al2O3(s)``; ``C2H2,acetylene`` gives itself with ``(g)``.
     """
-    shown = name.replace("AL", "Al").replace("CL", "Cl")
+    shown = re.sub(r"(?<=[A-Za-z])\.(?=\d)", "0.", name.replace("AL", "Al").replace("CL", "Cl"))
     charged = re.fullmatch(r"(.*[A-Za-z])(\d+)([+-])", shown)
     if charged:
         shown = f"{charged[1]}{charged[2]}^{charged[3]}"

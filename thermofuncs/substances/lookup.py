@@ -165,7 +165,7 @@ def _by_common_name(text: str, tag: str, targets: tuple[str, ...], data: UserDat
     if not tag:
         if len(targets) > 1 and not tied_to(text):
             raise _Stop(AmbiguousSubstance, given=text, candidates=_either(targets))
-        return _search(targets[0], data)
+        return _target(text, targets[0], data)
     phase = PHASES.get(tag, tag)
     for target in targets:
         if target.endswith(f"({phase})"):
@@ -174,6 +174,14 @@ def _by_common_name(text: str, tag: str, targets: tuple[str, ...], data: UserDat
     if own_tag not in PHASES and phase == "s":
         return _search(targets[0], data)
     return _search(f"{stem}({phase})", data)
+
+
+def _target(text: str, target: str, data: UserData | None) -> Substance:
+    """A label of the list of everyday names, or labels of one solid joined by ``>``."""
+    if ">" not in target:
+        return _search(target, data)
+    entries = tuple(e for label in target.split(">") for e in index().labels[label])
+    return chains.part(text, entries)
 
 
 def _by_formula(text: str, stem: str, tag: str, data: UserData | None) -> Substance:

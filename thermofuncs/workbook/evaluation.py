@@ -7,7 +7,7 @@ import math
 import zipfile
 from collections.abc import Callable, Collection, Mapping, Sequence
 from dataclasses import dataclass
-from typing import Any
+from typing import Any, Protocol
 from xml.sax.saxutils import quoteattr
 
 import formualizer
@@ -18,6 +18,7 @@ from thermofuncs.workbook.addresses import Place, column_letters, parse_area
 from thermofuncs.workbook.book import Book, Stored
 from thermofuncs.workbook.markup import encoded
 from thermofuncs.workbook.rewriting import FIT, MAP, SITE, Prepared, Site
+from thermofuncs.working import Step
 
 WORKSHEET_VALUES = {
     "Div": "#DIV/0!", "Num": "#NUM!", "Na": "#N/A", "Value": "#VALUE!", "Ref": "#REF!", "Name": "#NAME?",
@@ -40,6 +41,22 @@ _TYPES = "application/vnd.openxmlformats-officedocument.spreadsheetml"
 _HEAD = '<?xml version="1.0" encoding="UTF-8"?>'
 
 
+class Explained(Protocol):
+    """A result with the steps and cautions behind it."""
+
+    @property
+    def result(self) -> object:
+        """The result."""
+
+    @property
+    def steps(self) -> Sequence[Step]:
+        """The steps, in order; the last one's value is the result."""
+
+    @property
+    def cautions(self) -> Sequence[str]:
+        """The cautions, in sentences."""
+
+
 @dataclass(frozen=True, slots=True)
 class Functions:
     """The worksheet functions that answer when a formula calls them.
@@ -49,12 +66,14 @@ class Functions:
     names : collection of str. Their names, such as ``LNK``.
     tables : collection of str. Those that give a table.
     evaluate : callable. Takes a name and the arguments; gives a value and never raises.
+    explain : callable. Takes the same; gives what has ``result``, ``steps`` and ``cautions``.
     blank : object. What stands for a blank single cell among the arguments.
     """
 
     names: Collection[str]
     tables: Collection[str]
     evaluate: Callable[[str, Sequence[object]], object]
+    explain: Callable[[str, Sequence[object]], Explained]
     blank: object
 
 

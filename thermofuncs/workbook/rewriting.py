@@ -89,6 +89,15 @@ class Prepared:
         return bool(self.sites)
 
     @property
+    def written(self) -> str:
+        """The formula as this cell shows it, a shared one moved to its place."""
+        rows = self.place.row - self.stored.origin.row
+        columns = self.place.column - self.stored.origin.column
+        if not (rows or columns):
+            return "=" + self.stored.text
+        return "=" + _as_written(formula_tree(self.stored.text), rows, columns)
+
+    @property
     def volatile(self) -> bool:
         """Whether a spreadsheet computes it anew each time."""
         return bool(self.functions & natives.VOLATILE)
@@ -192,7 +201,7 @@ class Rewriter:
             array = array or many
         return "".join(pieces), array
 
-    def _item(
+    def _item(  # noqa: PLR0911 - one exit for each kind of item
         self, item: Node, before: Node | None, after: Node | None, context: _Context
     ) -> tuple[str, bool]:
         """The text of one item between its neighbours, of which @ and # change what it means."""
@@ -372,7 +381,7 @@ class Rewriter:
         omitted: set[int] = set()
         texts, written, array = [str(number)], [], name in self.tables
         for position, argument in enumerate(call.arguments):
-            written.append(_as_written(argument).strip())
+            written.append(_as_written(argument, context.rows, context.columns).strip())
             if not significant(argument):
                 omitted.add(position)
                 texts.append("0")
@@ -396,16 +405,17 @@ def _calls_ours(item: Node | None) -> bool:
     return isinstance(item, Call) and called_name(item.spelled) is not None
 
 
-def _as_written(items: Sequence[Node]) -> str:
-    """The text of items as the formula has it."""
+def _as_written(items: Sequence[Node], rows: int = 0, columns: int = 0) -> str:
+    """The text of items as the formula has it, in a copy so many rows and columns away."""
     pieces = []
     for item in items:
         if isinstance(item, Group):
-            pieces.append(f"({_as_written(item.items)})")
+            pieces.append(f"({_as_written(item.items, rows, columns)})")
         elif isinstance(item, Call):
-            pieces.append(f"{item.spelled}({','.join(_as_written(argument) for argument in item.arguments)})")
+            arguments = ",".join(_as_written(argument, rows, columns) for argument in item.arguments)
+            pieces.append(f"{item.spelled}({arguments})")
+        elif isinstance(item, Operand) and (reference := parse_reference(item.text)) is not None:
+            pieces.append(str(reference.moved(rows, columns)) if rows or columns else item.text)
         else:
             pieces.append(item.text)
     return "".join(pieces)
-
-
