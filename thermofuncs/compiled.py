@@ -10,9 +10,12 @@ from functools import lru_cache
 from thermofuncs.combination import ATM_IN_BAR, Combination, Member
 from thermofuncs.errors import BareElectron, UserReactionBasis
 from thermofuncs.reactions import ELECTRON, Equation, check_balance, parse_equation
-from thermofuncs.substances.lookup import find_substance, reference_element
-from thermofuncs.substances.records import Substance
-from thermofuncs.substances.user_table import UserData, UserReaction, reaction_row
+from thermofuncs.substances.elements import reference_element
+from thermofuncs.substances.forms import anchored, constant
+from thermofuncs.substances.lookup import find_substance
+from thermofuncs.substances.records import Note, Segment, Substance, SubstanceRow
+from thermofuncs.substances.user_data import UserData, UserReaction
+from thermofuncs.units import R
 
 BOUND = 4096
 
@@ -33,8 +36,8 @@ def reaction(text: str, data: UserData | None, atm: bool, extrapolate: bool) -> 
     ThermofuncsError: the text cannot be read, does not balance, or names what the data lacks.
     """
     equation = parse_equation(text)
-    if data is not None and (row := data.reaction(equation)) is not None:
-        return _from_row(text, equation, row, atm=atm, extrapolate=extrapolate)
+    if data is not None and (own := _own_row(equation, data)) is not None:
+        return _from_row(text, equation, own, atm=atm, extrapolate=extrapolate)
     members = [(c, found(species, data)) for species, c in equation.net()]
     check_balance(equation, {species: s for (species, _), (_, s) in zip(equation.net(), members, strict=True)})
     return Combination(
@@ -49,15 +52,38 @@ def found(species: str, data: UserData | None) -> Substance:
     return find_substance(species, data)
 
 
+def _own_row(equation: Equation, data: UserData) -> tuple[UserReaction, Fraction] | None:
+    """The user's row of this reaction, and the factor that makes it this one; negative for its reverse."""
+    wanted = {species: n for n, species in equation.net()}
+    for row in data.reactions:
+        given = {species: n for n, species in parse_equation(row.equation, "data").net()}
+        if given.keys() != wanted.keys():
+            continue
+        factors = {wanted[species] / n for species, n in given.items()}
+        if len(factors) == 1:
+            return row, factors.pop()
+    return None
+
+
 def _from_row(
-    text: str, equation: Equation, row: tuple[UserReaction, Fraction], *, atm: bool, extrapolate: bool
+    text: str, equation: Equation, own: tuple[UserReaction, Fraction], *, atm: bool, extrapolate: bool
 ) -> Combination:
     """The table of a reaction that a row of the user's data gives as a whole, scaled to the equation."""
-    given, scale = row
-    if atm and equation.gas_moles() is None:
+    row, scale = own
+    gas_moles = equation.gas_moles()
+    if atm and gas_moles is None:
         raise UserReactionBasis(what=text)
-    shift = -float(equation.gas_moles() or 0) * _LN_ATM if atm else 0.0
-    substance = reaction_row(given, entropy_shift=shift / float(scale))
+    shift = -float((gas_moles or 0) / scale) * math.log(ATM_IN_BAR) if atm else 0.0
+    interval = anchored(
+        row.t_low, row.t_high, constant((row.drcp or 0.0) / R), row.drh / R, row.drs / R + shift, row.t_ref
+    )
+    notes = () if row.drcp is not None else (
+        Note(f"no ΔrCp° is given, so ΔrH° and ΔrS° are held at their values of {row.t_ref:g} K."),
+    )
+    whole = SubstanceRow(
+        row.equation, row.equation, {}, 0, "s", 0.0, (interval,), row.drh, row.source, notes=notes
+    )
+    substance = Substance(row.equation, (Segment(row.t_low, row.t_high, whole),))
     return Combination(text, [Member(float(scale), substance)], extrapolate=extrapolate)
 
 
@@ -114,5 +140,3 @@ def _elements(one: Substance) -> list[tuple[float, Substance]]:
 def _atoms(composition: Mapping[str, float], element: str) -> float:
     return composition.get(element, 1.0)
 
-
-_LN_ATM = math.log(ATM_IN_BAR)

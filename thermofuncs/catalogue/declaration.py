@@ -11,6 +11,8 @@ Kind = Literal[
     "number",  # a number in the argument's unit, or a quantity text of its dimension
     "text",
     "unit",  # the unit of the answer
+    "input unit",  # the unit of another argument's bare number
+    "flag",  # true or false
     "name",  # the name of a worksheet function
     "list",  # a range read as one list of cells
     "table",  # a range kept as rows
@@ -44,6 +46,7 @@ class Argument:
     unit : str. The unit of a bare number, ``1`` where it has none.
     optional : bool. May be left out.
     variadic : bool. The last one: any number of further values.
+    unit_from : str. The argument that may state another unit for a bare number of this one.
     """
 
     name: str
@@ -52,6 +55,7 @@ class Argument:
     unit: str = ""
     optional: bool = False
     variadic: bool = False
+    unit_from: str = ""
 
 
 @dataclass(frozen=True, slots=True)

@@ -16,6 +16,7 @@ from thermofuncs.catalogue.reading import (
     Options,
     PassedError,
     cells,
+    in_stated_unit,
     missing,
     options_of,
 )
@@ -168,7 +169,7 @@ def _read(
                 values.append(options)
             elif not argument.optional:
                 wrong.append(missing(function, argument, blank=value is BLANK))
-            elif argument.kind != "unit":
+            elif argument.kind not in ("unit", "input unit"):
                 values.append(None)
             continue
         if type(value) is CellError:
@@ -179,14 +180,16 @@ def _read(
             values.append(value)
         else:
             try:
+                if argument.unit_from:
+                    value = in_stated_unit(function, arguments, argument, value)
                 read = READERS[argument.kind](value, argument, options)
+                if argument.kind == "unit":
+                    unit = _checked_unit(function, cast("str", read), argument)
+                    continue
             except ThermofuncsError as error:
                 wrong.append(error)
                 continue
-            if argument.kind == "unit":
-                factor(function.result_unit, cast("str", read), argument.name)
-                unit = cast("str", read)
-            else:
+            if argument.kind != "input unit":
                 values.append(read)
     if len(wrong) == 1:
         raise wrong[0]
@@ -195,6 +198,15 @@ def _read(
         together.worksheet_value = wrong[0].worksheet_value  # type: ignore[misc]  # of this one instance
         raise together
     return values, unit
+
+
+def _checked_unit(function: Function, unit: str, argument: Argument) -> str:
+    """The unit of the answer, refused where it does not fit the function."""
+    if function.result_unit == "K":
+        convert(300.0, "K", unit, argument.name)
+    else:
+        factor(function.result_unit, unit, argument.name)
+    return unit
 
 
 def _in_unit(value: float, from_unit: str, into_unit: str, record: Record | None) -> float:

@@ -125,6 +125,13 @@ def read_text(value: object, argument: Argument, _: Options) -> str:
     return value
 
 
+def read_flag(value: object, argument: Argument, _: Options) -> bool:
+    """True or false; 1 or 0 mean the same."""
+    if isinstance(value, bool) or (isinstance(value, int | float) and value in (0, 1)):
+        return bool(value)
+    raise WrongType(argument=argument.name, given=described(value), needed="TRUE or FALSE")
+
+
 def read_unit(value: object, argument: Argument, options: Options) -> str:
     """The text of a unit, which must be one of the known spellings."""
     text = read_text(value, argument, options)
@@ -164,11 +171,23 @@ READERS: dict[str, Callable[[object, Argument, Options], object]] = {
     "number": read_number,
     "text": read_text,
     "unit": read_unit,
+    "input unit": read_unit,
+    "flag": read_flag,
     "name": read_text,
     "list": read_list,
     "table": read_table,
     "data": read_data,
 }
+
+
+def in_stated_unit(function: Function, arguments: Sequence[object], argument: Argument, value: object) -> object:
+    """A bare number as a quantity text in the unit that another argument states for it."""
+    if isinstance(value, bool) or not isinstance(value, int | float):
+        return value
+    for other, unit in zip(function.arguments, arguments, strict=False):
+        if other.name == argument.unit_from and isinstance(unit, str) and unit:
+            return f"{value!r} {unit}"
+    return value
 
 
 def options_of(function: Function, arguments: Sequence[object]) -> Options:

@@ -170,6 +170,8 @@ def _by_common_name(text: str, tag: str, targets: tuple[str, ...], data: UserDat
     for target in targets:
         if target.endswith(f"({phase})"):
             return _search(target, data)
+    if tied_to(split_phase(text)[0]) and not (phase == "s" and split_phase(targets[0])[1] not in PHASES):
+        raise _Stop(PhaseNotAvailable, given=text, candidates=f"that name as {_either(targets)}", remark="")
     stem, own_tag = split_phase(targets[0])
     if own_tag not in PHASES and phase == "s":
         return _search(targets[0], data)
