@@ -38,14 +38,13 @@ def reaction(text: str, data: UserData | None, atm: bool, extrapolate: bool) -> 
     equation = parse_equation(text)
     if data is not None and (own := _own_row(equation, data)) is not None:
         return _from_row(text, equation, own, atm=atm, extrapolate=extrapolate)
-    members = [(c, found(species, data)) for species, c in equation.net()]
-    check_balance(equation, {species: s for (species, _), (_, s) in zip(equation.net(), members, strict=True)})
-    return Combination(
-        text, [Member(float(c), s) for c, s in members], atm=atm, extrapolate=extrapolate
-    )
+    found = {species: _found(species, data) for _, species in equation.net()}
+    check_balance(equation, found)
+    members = [Member(float(n), found[species]) for n, species in equation.net()]
+    return Combination(text, members, atm=atm, extrapolate=extrapolate)
 
 
-def found(species: str, data: UserData | None) -> Substance:
+def _found(species: str, data: UserData | None) -> Substance:
     """The substance of an equation; a bare electron has no data here."""
     if species == ELECTRON:
         raise BareElectron()
@@ -94,10 +93,9 @@ def electrode_reaction(text: str, data: UserData | None, atm: bool, extrapolate:
     electrons = sum(float(c) for c, species in equation.net() if species == ELECTRON)
     if not electrons:
         return reaction(text, data, atm, extrapolate)
-    members = [(c, find_substance(s, data)) for c, s in equation.net() if s != ELECTRON]
-    check_balance(equation, {s: x for (_, s), (_, x) in zip(
-        [(c, s) for c, s in equation.net() if s != ELECTRON], members, strict=True)})
-    parts = [Member(float(c), s) for c, s in members]
+    found = {species: find_substance(species, data) for _, species in equation.net() if species != ELECTRON}
+    check_balance(equation, found)
+    parts = [Member(float(n), found[species]) for n, species in equation.net() if species != ELECTRON]
     parts += [Member(0.5 * electrons, find_substance("H2(g)")), Member(-electrons, find_substance("H+(aq)"))]
     return Combination(text, parts, atm=atm, extrapolate=extrapolate)
 

@@ -15,7 +15,8 @@ from thermofuncs.errors import (
     UnknownOption,
     WrongType,
 )
-from thermofuncs.substances.user_table import UserData, parse
+from thermofuncs.substances.user_data import UserData
+from thermofuncs.substances.user_table import parse
 from thermofuncs.units import dimension, kelvin, quantity
 
 SCALES = ("degC", "degF")
@@ -157,13 +158,7 @@ def read_table(value: object, argument: Argument, _: Options) -> list[list[objec
 
 def read_data(value: object, argument: Argument, options: Options) -> UserData:
     """The user's table of data."""
-    rows = read_table(value, argument, options)
-    return _parsed(tuple(tuple(row) for row in rows))
-
-
-@lru_cache(maxsize=64)
-def _parsed(rows: tuple[tuple[object, ...], ...]) -> UserData:
-    return parse([list(row) for row in rows])
+    return parse(read_table(value, argument, options), argument.name)
 
 
 READERS: dict[str, Callable[[object, Argument, Options], object]] = {

@@ -1,10 +1,9 @@
 """Substances: heat-capacity forms, the bundled data, look-up, reference elements, a user's own table."""
 
+from thermofuncs.substances.datasets import Dataset, datasets
 from thermofuncs.substances.elements import atomic_mass, molar_mass, reference_element
-from thermofuncs.substances.index import Dataset, datasets
 from thermofuncs.substances.lookup import find_substance, search
-from thermofuncs.substances.user_data import UserData, UserReaction
-from thermofuncs.substances.user_table import parse
+from thermofuncs.substances.user_table import UserData, UserReaction, parse
 
 __all__ = [
     "Dataset",

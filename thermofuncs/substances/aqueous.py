@@ -21,7 +21,7 @@ from pathlib import Path
 
 from thermofuncs.substances import elements, printed
 from thermofuncs.substances.forms import REFERENCE_TEMPERATURE, anchored, constant
-from thermofuncs.substances.records import ROOM_TOLERANCE, Source, SubstanceRow, Uncertainty
+from thermofuncs.substances.records import ROOM_TOLERANCE, Note, Source, SubstanceRow, Uncertainty
 from thermofuncs.units import R
 
 TABLE = Path(__file__).with_name("aqueous_ions.csv")
@@ -127,22 +127,25 @@ def of_ion(ion: Ion) -> SubstanceRow:
         u_formation_enthalpy=Uncertainty.exact() if ion.label == "H+(aq)" else Uncertainty.unknown(),
         u_entropy=Uncertainty.exact() if ion.label == "H+(aq)" else Uncertainty.unknown(),
         notes=notes(ion, entropy),
-        notes_away_from_298=() if ion.label == "H+(aq)" else (away(ion),),
         gibbs_only=gibbs_only,
     )
 
 
-def notes(ion: Ion, entropy: float) -> tuple[str, ...]:
-    """A caution where the source's own S° does not fit its ΔfG° and ΔfH°."""
-    if ion.enthalpy is None or ion.entropy is None:
+def notes(ion: Ion, entropy: float) -> tuple[Note, ...]:
+    """The cautions: away from 298.15 K, and where the source's own S° does not fit its ΔfG° and ΔfH°."""
+    if ion.label == "H+(aq)":
         return ()
-    difference = REFERENCE_TEMPERATURE * (entropy - ion.entropy)
-    if abs(difference) <= AGREEMENT:
-        return ()
-    return (
-        f"the source's ΔfG° differs from its ΔfH° − TΔfS° by {difference / 1000.0:.1f} kJ/mol;"
-        " ΔfG° and ΔfH° are used.",
-    )
+    at, sentence = REFERENCE_TEMPERATURE, away(ion)
+    found = [Note(sentence, below=at - ROOM_TOLERANCE), Note(sentence, above=at + ROOM_TOLERANCE)]
+    if ion.enthalpy is not None and ion.entropy is not None:
+        difference = at * (entropy - ion.entropy)
+        if abs(difference) > AGREEMENT:
+            disagreement = (
+                f"the source's ΔfG° differs from its ΔfH° − TΔfS° by {difference / 1000.0:.1f} kJ/mol;"
+                " ΔfG° and ΔfH° are used."
+            )
+            found.append(Note(disagreement))
+    return tuple(found)
 
 
 def away(ion: Ion) -> str:

@@ -7,10 +7,22 @@ ice, is tied to its first label; any other name needs a phase where it has sever
 from __future__ import annotations
 
 import csv
+import re
 from functools import lru_cache
 from pathlib import Path
 
 TABLE = Path(__file__).with_name("common_names.csv")
+PHASES = {"s": "s", "cr": "s", "l": "l", "L": "l", "g": "g", "aq": "aq"}
+TAGGED = re.compile(r"(.+?) ?\(([^()]+)\)")
+
+
+def normal_text(text: str) -> str:
+    """A text of a substance with single spaces, plain minus signs and the house's phase signs."""
+    text = " ".join(text.replace("−", "-").replace("–", "-").split())
+    tagged = TAGGED.fullmatch(text)
+    if tagged and tagged[2] in PHASES:
+        return f"{tagged[1]}({PHASES[tagged[2]]})"
+    return text
 
 
 def normalised(name: str) -> str:

@@ -24,10 +24,21 @@ from thermofuncs.substances.forms import (
     enthalpy,
     entropy,
 )
-from thermofuncs.substances.records import ROOM_TOLERANCE, Segment, Source, Substance, SubstanceRow, Uncertainty
+from thermofuncs.substances.records import (
+    ROOM_TOLERANCE,
+    Segment,
+    Source,
+    Substance,
+    SubstanceRow,
+    Uncertainty,
+)
 from thermofuncs.units import R
 
 HERE = Path(__file__).parent
+MASS_REFERENCE = (
+    "Atomic weights of the elements 2017 (IUPAC Commission on Isotopic Abundances and Atomic Weights),"
+    " conventional values"
+)
 
 
 def _rows(name: str) -> list[dict[str, str]]:
@@ -117,7 +128,7 @@ def reference_element(symbol: str, argument: str = "substance") -> Substance:
 
     Parameters
     ----------
-    symbol : str. Element symbol; ``e`` is the electron gas.
+    symbol : str. Element symbol; ``E`` is the electron gas.
     argument : str. The name used in an error's sentence.
 
     Raises

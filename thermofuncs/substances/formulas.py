@@ -19,10 +19,7 @@ from thermofuncs.errors import FormulaNotRead, FormulaTooLong, TwoReadings
 LONGEST = 400
 DEEPEST = 20
 ELEMENTS = frozenset(
-    "H He Li Be B C N O F Ne Na Mg Al Si P S Cl Ar K Ca Sc Ti V Cr Mn Fe Co Ni Cu Zn Ga Ge As Se Br Kr Rb Sr Y"
-    " Zr Nb Mo Tc Ru Rh Pd Ag Cd In Sn Sb Te I Xe Cs Ba La Ce Pr Nd Pm Sm Eu Gd Tb Dy Ho Er Tm Yb Lu Hf Ta W Re"
-    " Os Ir Pt Au Hg Tl Pb Bi Po At Rn Fr Ra Ac Th Pa U Np Pu Am Cm Bk Cf Es Fm Md No Lr Rf Db Sg Bh Hs Mt Ds Rg"
-    " Cn Nh Fl Mc Lv Ts Og D".split()
+    ["H", "He", "Li", "Be", "B", "C", "N", "O", "F", "Ne", "Na", "Mg", "Al", "Si", "P", "S", "Cl", "Ar", "K", "Ca", "Sc", "Ti", "V", "Cr", "Mn", "Fe", "Co", "Ni", "Cu", "Zn", "Ga", "Ge", "As", "Se", "Br", "Kr", "Rb", "Sr", "Y", "Zr", "Nb", "Mo", "Tc", "Ru", "Rh", "Pd", "Ag", "Cd", "In", "Sn", "Sb", "Te", "I", "Xe", "Cs", "Ba", "La", "Ce", "Pr", "Nd", "Pm", "Sm", "Eu", "Gd", "Tb", "Dy", "Ho", "Er", "Tm", "Yb", "Lu", "Hf", "Ta", "W", "Re", "Os", "Ir", "Pt", "Au", "Hg", "Tl", "Pb", "Bi", "Po", "At", "Rn", "Fr", "Ra", "Ac", "Th", "Pa", "U", "Np", "Pu", "Am", "Cm", "Bk", "Cf", "Es", "Fm", "Md", "No", "Lr", "Rf", "Db", "Sg", "Bh", "Hs", "Mt", "Ds", "Rg", "Cn", "Nh", "Fl", "Mc", "Lv", "Ts", "Og", "D"]
 )
 PHASES = frozenset({"g", "l", "s", "cr", "aq"})
 PLAIN_SIGNS = str.maketrans(
@@ -102,7 +99,7 @@ def parse_species(text: str, argument: str = "reaction") -> Formula:
 Failure = tuple[type[FormulaNotRead | TwoReadings | FormulaTooLong], dict[str, str]]
 
 
-class _Stop(Exception):  # noqa: N818  carries a failure to the cache
+class _Stop(Exception):
     def __init__(self, kind: type[FormulaNotRead | TwoReadings | FormulaTooLong], **data: str) -> None:
         super().__init__()
         self.failure: Failure = (kind, data)
@@ -169,9 +166,7 @@ def _is_group(tag: str) -> bool:
 
 
 def _split_charge(body: str, text: str) -> tuple[str, int]:
-    if found := _CHARGE_BRACKET.search(body):
-        number, sign = (found[1], found[2]) if found[2] else (found[4], found[3])
-    elif found := _CHARGE_CARET.search(body):
+    if (found := _CHARGE_BRACKET.search(body)) or (found := _CHARGE_CARET.search(body)):
         number, sign = (found[1], found[2]) if found[2] else (found[4], found[3])
     elif found := _CHARGE_PLAIN.search(body):
         signs = found[1]

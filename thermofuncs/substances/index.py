@@ -55,17 +55,6 @@ class Index:
     unusable: Mapping[str, tuple[Entry, ...]]
 
 
-@dataclass(frozen=True, slots=True)
-class Dataset:
-    """A bundled table: its id, title, reference line, content hash and number of records."""
-
-    id: str
-    title: str
-    reference: str
-    sha256: str
-    rows: int
-
-
 def formula_key(composition: Iterable[tuple[str, float]], charge: int) -> str:
     """Composition and charge as one text, such as ``O:4 S:1|-2``."""
     return f"{printed.composition_key(tuple(composition))}|{charge}"
@@ -117,13 +106,3 @@ def index() -> Index:
 def row(entry: Entry) -> SubstanceRow:
     """The row of an entry that can be used."""
     return nasa_glenn.row(entry.number) if entry.dataset == printed.DATASET else aqueous.row(entry.number)
-
-
-def datasets() -> list[Dataset]:
-    """The bundled tables."""
-    return [
-        Dataset(
-            printed.DATASET, printed.TITLE, printed.REFERENCE, nasa_glenn.sha256(), len(nasa_glenn.lines())
-        ),
-        Dataset(aqueous.DATASET, aqueous.TITLE, aqueous.REFERENCE, aqueous.sha256(), len(aqueous.ions())),
-    ]

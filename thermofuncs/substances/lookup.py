@@ -24,19 +24,19 @@ from thermofuncs.errors import (
     UnknownSubstance,
 )
 from thermofuncs.substances import chains
-from thermofuncs.substances.common_names import common_names, normalised, tied_to
+from thermofuncs.substances.common_names import PHASES, TAGGED, common_names, normal_text, normalised, tied_to
+from thermofuncs.substances.elements import reference_element
 from thermofuncs.substances.formulas import parse_species
 from thermofuncs.substances.index import Entry, formula_key, index, row
 from thermofuncs.substances.records import Substance, SubstanceRow
-from thermofuncs.substances.user_data import UserData
+from thermofuncs.substances.user_table import UserData
 
-PHASES = {"s": "s", "cr": "s", "l": "l", "L": "l", "g": "g", "aq": "aq"}
+__all__ = ["find_substance", "nearest", "reference_element", "search", "split_phase"]
+
 GREEK = {
     "alpha": "a", "α": "a", "beta": "b", "β": "b", "gamma": "c", "γ": "c", "delta": "d", "δ": "d",
 }  # fmt: skip
-IN_WORDS = {"s": "solid", "l": "liquid", "g": "gas", "aq": "solute in water"}
 
-_TAGGED = re.compile(r"(.+?) ?\(([^()]+)\)")
 _SYMBOL = re.compile(r"[A-Z][a-z]?")
 
 
@@ -81,7 +81,7 @@ def find_substance(text: str, data: UserData | None = None, argument: str = "rea
 Failure = tuple[type[ThermofuncsError], dict[str, str]]
 
 
-class _Stop(Exception):  # noqa: N818  carries a failure out of the search to the cache
+class _Stop(Exception):
     def __init__(self, kind: type[ThermofuncsError], **values: str) -> None:
         super().__init__()
         self.failure: Failure = (kind, values)
@@ -96,18 +96,9 @@ def _found(text: str, data: UserData | None) -> Substance | Failure:
         return stop.failure
 
 
-def normal_text(text: str) -> str:
-    """A text with single spaces, plain minus signs and the house's phase signs."""
-    text = " ".join(text.replace("−", "-").replace("–", "-").split())
-    tagged = _TAGGED.fullmatch(text)
-    if tagged and tagged[2] in PHASES:
-        return f"{tagged[1]}({PHASES[tagged[2]]})"
-    return text
-
-
 def split_phase(text: str) -> tuple[str, str]:
     """A text without its last bracket, and what stood in it; empty where it is part of the formula."""
-    tagged = _TAGGED.fullmatch(text)
+    tagged = TAGGED.fullmatch(text)
     if tagged is None:
         return text, ""
     tag = tagged[2]

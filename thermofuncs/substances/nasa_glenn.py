@@ -14,7 +14,7 @@ from pathlib import Path
 from thermofuncs.substances import codata, printed
 from thermofuncs.substances.forms import REFERENCE_TEMPERATURE, Interval
 from thermofuncs.substances.printed import PrintedRecord
-from thermofuncs.substances.records import Source, SubstanceRow, Uncertainty
+from thermofuncs.substances.records import Note, Source, SubstanceRow, Uncertainty
 from thermofuncs.units import R_FIT_NASA, R
 
 TABLE = Path(__file__).with_name("nasa_glenn.csv")
@@ -45,7 +45,6 @@ def scaled(record: PrintedRecord) -> SubstanceRow:
     """The row of a printed record, with its coefficients scaled to the house's gas constant."""
     reference = f"{printed.TITLE}, {record.reference}" + (f" ({record.note})" if record.note else "")
     u_enthalpy, u_entropy = uncertainties(record)
-    boils = record.boils
     return SubstanceRow(
         name=record.name,
         label=record.label,
@@ -58,11 +57,17 @@ def scaled(record: PrintedRecord) -> SubstanceRow:
         source=Source(printed.DATASET, record.place, reference),
         u_formation_enthalpy=u_enthalpy,
         u_entropy=u_entropy,
-        notes=(WHITE_PHOSPHORUS,) if record.name in ("P(cr)", "P(L)") else (),
-        notes_above=()
-        if boils is None
-        else ((boils, f"above {boils:.5g} K the liquid is stable only under pressure, by this data."),),
+        notes=notes(record),
     )
+
+
+def notes(record: PrintedRecord) -> tuple[Note, ...]:
+    """The cautions of a record."""
+    found = [Note(WHITE_PHOSPHORUS)] if record.name in ("P(cr)", "P(L)") else []
+    if record.boils is not None:
+        sentence = f"above {record.boils:.5g} K the liquid is stable only under pressure, by this data."
+        found.append(Note(sentence, above=record.boils))
+    return tuple(found)
 
 
 def scaled_interval(interval: Interval) -> Interval:

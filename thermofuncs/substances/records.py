@@ -6,7 +6,7 @@ from collections.abc import Mapping
 from dataclasses import dataclass, field
 from typing import Literal
 
-from thermofuncs.substances.forms import REFERENCE_TEMPERATURE, Interval
+from thermofuncs.substances.forms import Interval
 
 PhaseKind = Literal["g", "l", "s", "aq"]
 
@@ -100,8 +100,6 @@ class SubstanceRow:
     source : Source.
     u_formation_enthalpy, u_entropy : Uncertainty. [J/mol], [J/(mol K)]
     notes : tuple of Note. Cautions that go with the answers from this row.
-    notes_above : pairs of a temperature [K] and a sentence that holds above it.
-    notes_away_from_298 : sentences that hold more than 0.5 K away from 298.15 K.
     gibbs_only : the source gives ΔfG° at 298.15 K alone, so H, S and Cp of this row mean nothing.
     standard_pressure_bar : float. The gas's standard pressure in the source, before conversion. [bar]
     """
@@ -119,8 +117,6 @@ class SubstanceRow:
     u_entropy: Uncertainty = field(default_factory=Uncertainty.unknown)
     notes: tuple[Note, ...] = ()
     standard_pressure_bar: float = 1.0
-    notes_above: tuple[tuple[float, str], ...] = ()
-    notes_away_from_298: tuple[str, ...] = ()
     gibbs_only: bool = False
 
     def notes_at(self, temperature: float) -> list[str]:
@@ -136,12 +132,6 @@ class SubstanceRow:
     def t_high(self) -> float:
         """Upper limit of the row's range. [K]"""
         return self.intervals[-1].t_high
-
-    def notes_at(self, temperature: float) -> tuple[str, ...]:
-        """The sentences that go with an answer at a temperature [K]."""
-        above = tuple(note for limit, note in self.notes_above if temperature > limit)
-        away = abs(temperature - REFERENCE_TEMPERATURE) > ROOM_TOLERANCE
-        return self.notes + above + (self.notes_away_from_298 if away else ())
 
 
 @dataclass(frozen=True, slots=True)

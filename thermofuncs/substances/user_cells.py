@@ -9,7 +9,7 @@ from dataclasses import dataclass
 
 from thermofuncs.errors import CellError, ThermofuncsError
 from thermofuncs.substances.records import Source
-from thermofuncs.units import dimension, factor, kelvin
+from thermofuncs.units import factor, kelvin
 
 TEXTS = ("substance", "formula", "phase", "form", "unit", "unit S", "source", "note", "reaction")
 NUMBERS = (

@@ -10,7 +10,15 @@ from thermofuncs.errors import ThermofuncsError
 from thermofuncs.substances import elements, forms
 from thermofuncs.substances.forms import REFERENCE_TEMPERATURE, Interval, anchored
 from thermofuncs.substances.formulas import parse_species
-from thermofuncs.substances.records import PhaseKind, Segment, Source, Substance, SubstanceRow, Uncertainty
+from thermofuncs.substances.records import (
+    Note,
+    PhaseKind,
+    Segment,
+    Source,
+    Substance,
+    SubstanceRow,
+    Uncertainty,
+)
 from thermofuncs.substances.user_cells import Cells
 from thermofuncs.units import R
 
@@ -72,7 +80,7 @@ def substance_of(name: str, members: list[Cells]) -> Substance | None:
         source=Source("worksheet table", name, "; ".join(references)),
         u_formation_enthalpy=_uncertainty(first, "u(dfH)", u_enthalpy),
         u_entropy=_uncertainty(first, "u(S)", u_entropy),
-        notes=tuple(dict.fromkeys(note for cells in members if (note := cells.text("note")))),
+        notes=tuple(Note(note) for note in dict.fromkeys(c.text("note") for c in members) if note),
         standard_pressure_bar=p_ref,
     )
     return Substance(identity.label, (Segment(row.t_low, row.t_high, row),))

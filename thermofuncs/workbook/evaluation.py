@@ -178,8 +178,8 @@ class Evaluation:
         for position, value in enumerate(values):
             if position in site.omitted:
                 arguments.append(None)
-            elif value is None:
-                arguments.append(self.functions.blank)
+            elif value is None:  # in a circle, a formula cell that has no value yet counts as zero
+                arguments.append(0.0 if position in site.computed else self.functions.blank)
             else:
                 arguments.append(_argument(value))
         result = self.functions.evaluate(site.name, arguments)

@@ -49,6 +49,7 @@ class Site:
     omitted : frozenset of int. Which arguments are left out, from 0.
     texts : tuple of str. The arguments as the formula writes them.
     fit : tuple or None. Rows and columns that the result is spread over, where it is the whole formula.
+    computed : frozenset of int. Which arguments are a single formula cell, which is never blank.
     """
 
     number: int
@@ -58,6 +59,7 @@ class Site:
     omitted: frozenset[int]
     texts: tuple[str, ...]
     fit: tuple[int, int] | None = None
+    computed: frozenset[int] = frozenset()
 
 
 @dataclass(slots=True)
@@ -379,6 +381,7 @@ class Rewriter:
         self.sites.append(Site(number, self._prepared.place, name, call.spelled, frozenset(), ()))
         inner = context.inside(array=True, keep=True)
         omitted: set[int] = set()
+        computed: set[int] = set()
         texts, written, array = [str(number)], [], name in self.tables
         for position, argument in enumerate(call.arguments):
             written.append(_as_written(argument, context.rows, context.columns).strip())
@@ -389,12 +392,22 @@ class Rewriter:
             text, many = self._expression(argument, inner)
             texts.append(text)
             array = array or many
+            if not many and self._is_formula_cell(text, context):
+                computed.add(position)
         site = Site(
-            number, self._prepared.place, name, call.spelled, frozenset(omitted), tuple(written), fit
+            number, self._prepared.place, name, call.spelled, frozenset(omitted), tuple(written), fit,
+            frozenset(computed),
         )
         self.sites[number] = site
         self._prepared.sites.append(site)
         return f"{SITE}({','.join(texts)})", array and fit != (1, 1)
+
+    def _is_formula_cell(self, text: str, context: _Context) -> bool:
+        reference = parse_reference(text)
+        if reference is None or reference.last is not None:
+            return False
+        area = reference.area(context.sheet)
+        return self.book.formula(Place(area.sheet, area.top, area.left)) is not None
 
 
 def _is_text(item: Node | None, text: str) -> bool:
