@@ -25,6 +25,7 @@ if TYPE_CHECKING:
     Array = NDArray[np.float64]
 
 CHUNK = 10_000  # temperatures at a time: the arrays of one chunk stay in the cache of the processor
+FEW_INTERVALS = 2  # so many joints within a chunk
 STANDARD_EXPONENTS = (-2.0, -1.0, 0.0, 1.0, 2.0, 3.0, 4.0)
 EXTRAPOLATION_LIMITS = (1.0, 20000.0)
 ATM_IN_BAR = 1.01325
@@ -221,10 +222,15 @@ class Combination:
             if first == last:
                 out[:] = formula(self.table[first], t)
                 continue
+            if last - first <= FEW_INTERVALS:  # cheaper to compute all and choose than to gather
+                out[:] = formula(self.table[first], t)
+                for i in range(first + 1, last + 1):
+                    np.copyto(out, formula(self.table[i], t), where=t > self.uppers[i - 1])
+                continue
             index = np.searchsorted(self._limits, t, side="left")
             for i in range(first, last + 1):
-                chosen = index == i
-                if chosen.any():
+                chosen = np.flatnonzero(index == i)
+                if chosen.size:
                     out[chosen] = formula(self.table[i], t[chosen])
         return result
 

@@ -14,7 +14,7 @@ from thermofuncs.substances.elements import reference_element
 from thermofuncs.substances.forms import anchored, constant
 from thermofuncs.substances.lookup import find_substance
 from thermofuncs.substances.records import Note, Segment, Substance, SubstanceRow
-from thermofuncs.substances.user_data import UserData, UserReaction
+from thermofuncs.substances.user_table import UserData, UserReaction
 from thermofuncs.units import R
 
 BOUND = 4096

@@ -7,7 +7,7 @@ from importlib.metadata import version
 
 from thermofuncs.catalogue.declaration import Argument, Function
 from thermofuncs.errors import CellError, NothingFound, OneCallOnly
-from thermofuncs.substances.index import datasets
+from thermofuncs.substances.datasets import datasets
 from thermofuncs.working import Record
 
 GROUP = "Explanation"

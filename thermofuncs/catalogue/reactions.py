@@ -20,7 +20,7 @@ from thermofuncs.catalogue.declaration import Argument, Function
 from thermofuncs.catalogue.reading import PLAIN, Options
 from thermofuncs.combination import Combination
 from thermofuncs.errors import ElectronCount, NoRoot, NotPositive
-from thermofuncs.substances.user_data import UserData
+from thermofuncs.substances.user_table import UserData
 from thermofuncs.units import R
 from thermofuncs.working import Record
 

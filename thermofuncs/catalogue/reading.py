@@ -15,8 +15,7 @@ from thermofuncs.errors import (
     UnknownOption,
     WrongType,
 )
-from thermofuncs.substances.user_data import UserData
-from thermofuncs.substances.user_table import parse
+from thermofuncs.substances.user_table import UserData, parse
 from thermofuncs.units import dimension, kelvin, quantity
 
 SCALES = ("degC", "degF")

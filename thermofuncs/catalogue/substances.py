@@ -16,7 +16,7 @@ from thermofuncs.substances.forms import REFERENCE_TEMPERATURE
 from thermofuncs.substances.formulas import parse_formula
 from thermofuncs.substances.lookup import find_substance, search
 from thermofuncs.substances.records import Substance, SubstanceRow
-from thermofuncs.substances.user_data import UserData
+from thermofuncs.substances.user_table import UserData
 from thermofuncs.units import R
 from thermofuncs.working import Record
 
