@@ -65,7 +65,10 @@ def molar_mass_of(formula: str, record: Record | None = None) -> float:
 
 
 def _formula_text(row: SubstanceRow) -> str:
-    atoms = " ".join(f"{element}{n:g}" for element, n in row.composition.items())
+    """Atoms in the order of Hill: carbon and hydrogen first, then by the alphabet."""
+    first = ("C", "H") if "C" in row.composition else ()
+    order = sorted(row.composition, key=lambda e: (e not in first, e))
+    atoms = " ".join(e if row.composition[e] == 1 else f"{e}{row.composition[e]:g}" for e in order)
     return f"{atoms} charge {row.charge:+d}" if row.charge else atoms
 
 

@@ -28,8 +28,8 @@ TABLE = Path(__file__).with_name("aqueous_ions.csv")
 DATASET = "nbs-1982-ions"
 TITLE = "Ions in water at 298.15 K"
 REFERENCE = (
-    "Wagman et al., The NBS tables of chemical thermodynamic properties, J. Phys. Chem. Ref. Data 11 Suppl. 2,"
-    " 1982; figures taken from the table of aqueous ions in the chemicals package"
+    "Wagman et al., The NBS tables of chemical thermodynamic properties, J. Phys. Chem. Ref. Data 11"
+    " Suppl. 2, 1982; figures taken from the table of aqueous ions in the chemicals package"
 )
 T_LOW, T_HIGH = 273.15, 373.15
 AGREEMENT = 1000.0  # J/mol between ΔfG° and ΔfH° − TΔfS°

@@ -68,7 +68,7 @@ def enthalpy_at_298(record: PrintedRecord) -> Iterator[str]:
             difference = enthalpy(interval, at) * R_FIT_NASA * at - record.formation_enthalpy
             limit = 1.0 if record.name in ENTHALPY_EXCEPTIONS else ENTHALPY_TOLERANCE
             if abs(difference) > limit:
-                yield f"{record.place}: H(298.15 K) differs from the formation enthalpy by {difference:.3g} J/mol"
+                yield f"{record.place}: H(298.15 K) is {difference:.3g} J/mol off the formation enthalpy"
             return
 
 

@@ -127,9 +127,10 @@ def table_fields(row: Row, intervals: list[list[str]]) -> list[str]:
     if row["formula"] in COMPOSITION_MENDED:
         mass = f"{0.947 * 55.845 + 15.9994:.6g}"
         notes.append("molar mass of that composition")
+    reference = " ".join(f"{row['ref_code']}; {row['comment']}".split())
     return [
         row["name"], row["phase_index"], phase, label, chain, printed.composition_key(tuple(composition)),
-        str(charge), mass, row["Hf298_J_mol"], use, "", " ".join(f"{row['ref_code']}; {row['comment']}".split()),
+        str(charge), mass, row["Hf298_J_mol"], use, "", reference,
         "; ".join(filter(None, notes)), row["source_line"], "; ".join(" ".join(i) for i in intervals),
     ]  # fmt: skip
 
@@ -182,7 +183,8 @@ def main(arguments: list[str] | None = None) -> int:
         parser.add_argument(name, type=Path)
     paths = parser.parse_args(arguments)
     hashes = [hashlib.sha256(p.read_bytes()).hexdigest() for p in (paths.substances, paths.intervals)]
-    text, faults = make(read(paths.substances), read(paths.intervals), " ".join(f"sha256 {h}" for h in hashes))
+    sources = " ".join(f"sha256 {h}" for h in hashes)
+    text, faults = make(read(paths.substances), read(paths.intervals), sources)
     for fault in faults:
         sys.stderr.write(fault + "\n")
     if faults:

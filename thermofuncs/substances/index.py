@@ -63,9 +63,8 @@ def formula_key(composition: Iterable[tuple[str, float]], charge: int) -> str:
 def _nasa_entries() -> Iterable[Entry]:
     for number, f in enumerate(nasa_glenn.lines()):
         usable: Usable = "inert" if f[9] == "inert" else "" if f[14] else "one temperature"
-        yield Entry(
-            printed.DATASET, number, f[0], cast("PhaseKind", f[2]), f[3], f[4], f"{f[5]}|{f[6]}", f[11], usable
-        )
+        phase, key = cast("PhaseKind", f[2]), f"{f[5]}|{f[6]}"
+        yield Entry(printed.DATASET, number, f[0], phase, f[3], f[4], key, f[11], usable)
 
 
 def _ion_entries() -> Iterable[Entry]:

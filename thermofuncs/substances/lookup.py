@@ -26,7 +26,7 @@ from thermofuncs.errors import (
 from thermofuncs.substances import chains
 from thermofuncs.substances.common_names import PHASES, TAGGED, common_names, normal_text, normalised, tied_to
 from thermofuncs.substances.elements import reference_element
-from thermofuncs.substances.formulas import parse_species
+from thermofuncs.substances.formulas import Formula, parse_species
 from thermofuncs.substances.index import Entry, formula_key, index, row
 from thermofuncs.substances.records import Substance, SubstanceRow
 from thermofuncs.substances.user_table import UserData
@@ -101,24 +101,50 @@ def split_phase(text: str) -> tuple[str, str]:
     tagged = TAGGED.fullmatch(text)
     if tagged is None:
         return text, ""
-    tag = tagged[2]
-    return (text, "") if _SYMBOL.match(tag) and not re.fullmatch(r"[IV]+'?(,[IV]+)?", tag) else (tagged[1], tag)
+    stem, tag = tagged[1], tagged[2]
+    formula = _read(text)
+    if formula is not None and formula.phase is None:
+        return text, ""
+    return stem, tag
+
+
+def _read(text: str) -> Formula | None:
+    """A text as a formula; None where it is none."""
+    try:
+        return parse_species(text)
+    except NotUnderstood:
+        return None
 
 
 def _search(text: str, data: UserData | None) -> Substance:
-    if data is not None and (own := data.substance(text)) is not None:
-        return own
+    """The substance, in the order of the module's first lines."""
     if text == "e-":
         raise _Stop(AmbiguousSubstance, given=text, candidates="e-(g), the gas of electrons in the data")
     stem, tag = split_phase(text)
-    if (known := _by_label(text)) is not None:
+    known = _own(text, stem, tag, data) or _by_label(text) or _by_publishers_name(text, stem, tag)
+    if known is not None:
         return known
-    if (known := _by_publishers_name(text)) is not None:
-        return known
-    targets = common_names().get(normalised(text)) or common_names().get(normalised(stem))
-    if targets is not None:
-        return _by_common_name(text, "" if normalised(text) in common_names() else tag, targets, data)
+    names = common_names()
+    # TiN is titanium nitride, tin is a metal: what reads as a formula is one
+    if (tag or _read(text) is None) and (targets := names.get(normalised(text))):
+        return _by_common_name(text, "", targets, data)
+    if tag and _read(stem) is None and (targets := names.get(normalised(stem))):
+        return _by_common_name(text, tag, targets, data)
     return _by_formula(text, stem, tag, data)
+
+
+def _own(text: str, stem: str, tag: str, data: UserData | None) -> Substance | None:
+    """The substance of the user's own table, by name, or by formula and phase where no isomer is meant."""
+    if data is None:
+        return None
+    by_name = data.substance(text)
+    formula = _read(stem)
+    if by_name is not None or formula is None or tag not in PHASES:
+        return by_name
+    key = formula_key(tuple(formula.composition.items()), formula.charge)
+    own = [s for s in data.by_formula(key).values() if s.phase == PHASES[tag]]
+    isomers = [label for label in index().formulas.get(key, ()) if chains.chain(label).phase == PHASES[tag]]
+    return own[0] if len(own) == 1 and len(isomers) < 2 else None
 
 
 def _by_label(text: str) -> Substance | None:
@@ -129,18 +155,20 @@ def _by_label(text: str) -> Substance | None:
     return chains.part(text, entries) if entries else None
 
 
-def _by_publishers_name(text: str) -> Substance | None:
+def _by_publishers_name(text: str, stem: str, tag: str) -> Substance | None:
     """The records of this publisher's name; a plain formula is left to the search by formula."""
-    entries = index().names.get(text, ())
+    # a charged gas goes by its formula, where O2- has two readings
+    gas = "" if stem.endswith(("+", "-")) else stem
+    name = {"l": f"{stem}(L)", "s": f"{stem}(cr)", "g": gas}.get(tag, text)
+    entries = tuple(e for e in index().names.get(name, ()) if tag not in PHASES or e.phase == tag)
     usable = tuple(e for e in entries if not e.usable)
-    if usable and (usable[0].phase == "s" or "," in text):
-        return chains.part(usable[0].label, usable) if usable[0].phase == "s" else chains.chain(usable[0].chain)
-    if usable and usable[0].phase != "g" and usable[0].phase != "aq":
-        return chains.chain(usable[0].chain)
-    if usable and usable[0].phase == "g" and len(index().formulas[usable[0].key]) == 1:
-        return chains.chain(usable[0].chain)
-    if entries and not usable:
-        _refuse(text, entries)
+    if not usable:
+        return _refuse(text, entries) if entries else None
+    first = usable[0]
+    if first.phase == "s":
+        return chains.part(first.label, usable)
+    if tag or "," in text or len(index().formulas[first.key]) == 1:
+        return chains.chain(first.chain)
     return None
 
 
@@ -183,12 +211,14 @@ def _by_formula(text: str, stem: str, tag: str, data: UserData | None) -> Substa
         formula = parse_species(stem)
     except NotUnderstood as error:
         if stem[:1].isupper() and any(c.isdigit() or c in "+-^" for c in stem):
-            raise _Stop(type(error), **{k: str(v) for k, v in error.data.items() if k != "argument"}) from None
-        _unknown(text, data)
+            values = {k: str(v) for k, v in error.data.items() if k != "argument"}
+            raise _Stop(type(error), **values) from None
+        return _unknown(text, data)
     key = formula_key(tuple(formula.composition.items()), formula.charge)
     own = data.by_formula(key) if data is not None else {}
     bundled = {label: chains.chain(label) for label in index().formulas.get(key, ())}
-    there = {**bundled, **own}
+    replaced = {s.phase for s in own.values()}
+    there = {label: s for label, s in bundled.items() if s.phase not in replaced} | own
     phase = PHASES.get(tag, "s" if tag else "")
     if tag and tag not in PHASES:
         return _form(text, tag, [label for label in bundled if bundled[label].phase == "s"], there)
@@ -200,11 +230,10 @@ def _by_formula(text: str, stem: str, tag: str, data: UserData | None) -> Substa
     refused = [e for e in index().unusable.get(key, ()) if e.usable != "inert" and phase in ("", e.phase)]
     if refused:
         _refuse(text, tuple(refused))
+    remark = _solute_remark(phase, formula.charge)
     if there:
-        raise _Stop(
-            PhaseNotAvailable, given=text, candidates=_either(there, "and"), remark=_solute_remark(phase, formula.charge)
-        )
-    _unknown(text, data, "" if phase != "aq" or formula.charge else _solute_remark(phase, 0))
+        raise _Stop(PhaseNotAvailable, given=text, candidates=_either(there, "and"), remark=remark)
+    return _unknown(text, data, remark)
 
 
 def _solute_remark(phase: str, charge: int) -> str:
@@ -225,7 +254,7 @@ def _form(text: str, tag: str, solids: list[str], there: Iterable[str]) -> Subst
     names = list(dict.fromkeys([*there, *forms]))
     if names:
         raise _Stop(PhaseNotAvailable, given=text, candidates=_either(names, "and"), remark="")
-    _unknown(text, None)
+    return _unknown(text, None)
 
 
 def _isomer(text: str, stem: str, candidates: list[str]) -> str:
@@ -285,25 +314,25 @@ def search(text: str, data: UserData | None = None) -> list[SubstanceRow]:
     found: dict[Entry, None] = {}
     for label in _targets_of(part):
         found.update(dict.fromkeys(index().chains.get(label, ()) or index().labels.get(label, ())))
-    try:
-        formula = parse_species(split_phase(normal_text(text))[0])
+    formula = _read(split_phase(normal_text(text))[0])
+    if formula is not None:
         key = formula_key(tuple(formula.composition.items()), formula.charge)
         found.update(dict.fromkeys(e for e in usable if e.key == key))
-    except NotUnderstood:
-        pass
     if len(part) > 1:
-        found.update(
-            dict.fromkeys(
-                e for e in usable if part in e.label.casefold() or part in normalised(e.reference.partition("; ")[2])
-            )
-        )
-    own = [r for r in (data.rows() if data else ()) if part in r.name.casefold() or part in r.label.casefold()]
+        found.update(dict.fromkeys(e for e in usable if part in e.label.casefold() or part in _comment(e)))
+    rows = data.rows() if data else []
+    own = [r for r in rows if part in r.name.casefold() or part in r.label.casefold()]
     return own + [row(e) for e in found if not e.usable]
 
 
 def _targets_of(part: str) -> list[str]:
     """Labels whose everyday name holds a text."""
     return [t for name, targets in common_names().items() if part and part in name for t in targets]
+
+
+def _comment(entry: Entry) -> str:
+    """The publisher's comment on an entry, which often names a mineral or a form."""
+    return normalised(entry.reference.partition("; ")[2])
 
 
 def _elements(entry: Entry) -> set[str]:

@@ -100,8 +100,9 @@ def record(fields: list[str]) -> PrintedRecord:
     (name, index, phase, label, chain, composition, charge, mass, enthalpy, use, boils, reference, note, line,
      intervals) = fields  # fmt: skip
     return PrintedRecord(
-        name, int(index), cast("PhaseKind", phase), label, chain, parsed_composition(composition), int(charge),
-        float(mass), float(enthalpy), cast("Use", use), float(boils) if boils else None, reference, note,
+        name, int(index), cast("PhaseKind", phase), label, chain, parsed_composition(composition),
+        int(charge), float(mass), float(enthalpy), cast("Use", use), float(boils) if boils else None,
+        reference, note,
         int(line), parsed_intervals(intervals),
     )  # fmt: skip
 

@@ -44,7 +44,7 @@ def column_of(header: str) -> tuple[str, str] | None:
         return f"T^{float(top) / float(bottom or 1):.12g}", unit
     if name in CASED:
         return name, unit
-    known = _NAMES.get(name.casefold().replace("-", "_") if name.casefold().startswith("t") else name.casefold())
+    known = _NAMES.get(name.casefold())
     return (known, unit) if known else None
 
 
@@ -146,7 +146,9 @@ class Cells:
         written = self.table.columns[column][1] if column in self.table.columns else ""
         return written or self.text(per_row) or default
 
-    def _converted(self, column: str, per_row: str, default: str, house: str, *, required: bool) -> float | None:
+    def _converted(
+        self, column: str, per_row: str, default: str, house: str, *, required: bool
+    ) -> float | None:
         value = self.number_of(column, required=required)
         if value is None:
             return None

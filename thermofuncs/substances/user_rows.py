@@ -8,6 +8,7 @@ from typing import cast
 
 from thermofuncs.errors import ThermofuncsError
 from thermofuncs.substances import elements, forms
+from thermofuncs.substances.common_names import PHASES as WRITTEN_PHASES
 from thermofuncs.substances.forms import REFERENCE_TEMPERATURE, Interval, anchored
 from thermofuncs.substances.formulas import parse_species
 from thermofuncs.substances.records import (
@@ -22,7 +23,7 @@ from thermofuncs.substances.records import (
 from thermofuncs.substances.user_cells import Cells
 from thermofuncs.units import R
 
-PHASES = {"g": "g", "l": "l", "s": "s", "cr": "s", "aq": "aq", "L": "l", "gas": "g", "liquid": "l", "solid": "s"}
+PHASES = {**WRITTEN_PHASES, "gas": "g", "liquid": "l", "solid": "s"}
 FORMS = ("constant", "powers", "Shomate", "NASA-7", "NASA-9")
 SHOMATE = ("A", "B", "C", "D", "E")
 Terms = tuple[tuple[float, float], ...]
@@ -55,7 +56,8 @@ def substance_of(name: str, members: list[Cells]) -> Substance | None:
     intervals: list[Interval] = []
     for limits, cells in sorted(limited, key=lambda pair: pair[0]):
         if intervals and abs(intervals[-1].t_high - limits[0]) > 1e-6 * limits[0]:
-            cells.fault("T_low", f"is {limits[0]:g} K, and the interval before it ends at {intervals[-1].t_high:g} K")
+            before = f"the interval before it ends at {intervals[-1].t_high:g} K"
+            cells.fault("T_low", f"is {limits[0]:g} K, and {before}")
             return None
         interval = _interval(limits, cells, identity, intervals[-1] if intervals else None)
         if interval is None:
@@ -115,10 +117,7 @@ def _identity(name: str, cells: Cells) -> Identity | None:
     if phase is None and cells.text("phase"):
         cells.fault("phase", f"is {tag!r}: g, l, s or aq is needed")
         return None
-    if column == "formula" or name.endswith(")"):
-        label = name
-    else:
-        label = f"{name}({phase})"
+    label = name if column == "formula" or name.endswith(")") else f"{name}({phase})"
     if label.endswith(("(cr)", "(L)")):
         label = label[: label.rfind("(")] + f"({phase})"
     return Identity(label, formula.composition, formula.charge, cast("PhaseKind", phase or "s"))
@@ -138,7 +137,7 @@ def _form(cells: Cells) -> str | None:
     return None
 
 
-def _terms(form: str, cells: Cells) -> Terms | None:
+def _terms(form: str, cells: Cells) -> Terms | None:  # noqa: PLR0911  one return for each form and its faults
     """Cp/R as powers of T."""
     if form == "constant":
         cp = cells.entropy("Cp", required=True)
@@ -168,7 +167,7 @@ def _terms(form: str, cells: Cells) -> Terms | None:
     return forms.nasa7(a) if form == "NASA-7" else forms.nasa9(a)
 
 
-def _interval(
+def _interval(  # noqa: PLR0911  one return for each way to fix H and S, and for the faults
     limits: tuple[float, float], cells: Cells, identity: Identity, before: Interval | None
 ) -> Interval | None:
     """The interval of a row, with H and S from its constants, its dfH and S, or the interval before it."""
@@ -241,8 +240,8 @@ def _nasa(
 def _shomate(limits: tuple[float, float], terms: Terms, cells: Cells, identity: Identity) -> Interval | None:
     """An interval of the Shomate equation with its constants F and G.
 
-    H° = A t + B t²/2 + C t³/3 + D t⁴/4 − E/t + F in kJ/mol and S° = A ln t + B t + … + G in J/(mol K), t = T/1000,
-    as the NIST Chemistry WebBook prints them.
+    H° = A t + B t²/2 + C t³/3 + D t⁴/4 − E/t + F in kJ/mol and S° = A ln t + B t + … + G in J/(mol K),
+    t = T/1000, as the NIST Chemistry WebBook prints them.
     """
     f, g = cells.number_of("F", required=True), cells.number_of("G", required=True)
     scale = cells.heat_capacity_factor("A")

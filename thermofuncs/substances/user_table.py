@@ -10,8 +10,9 @@ Columns, in any order and any case; a unit may follow in square brackets:
 - ``T_low``, ``T_high``: the row's range; ``u(dfH)``, ``u(S)``: standard uncertainties; ``note``
 - ``source``: required on every row
 
-Several rows of one substance are its intervals, in order of temperature. In the second and later ones dfH and
-S may be left out: they continue. A row may also be a whole reaction: ``reaction``, ``drH``, ``drS``, ``drCp``.
+Several rows of one substance are its intervals, in order of temperature. In the second and later ones dfH
+and S may be left out: they continue. A row may also be a whole reaction: ``reaction``, ``drH``, ``drS``,
+``drCp``.
 Coefficients of the NASA forms are those of Cp/R, with the gas constant of this package.
 """
 

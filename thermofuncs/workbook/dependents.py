@@ -2,8 +2,8 @@
 
 from __future__ import annotations
 
-from collections import defaultdict, deque
-from collections.abc import Iterable, Mapping
+from collections import Counter, defaultdict, deque
+from collections.abc import Collection, Iterable, Mapping
 
 import numpy as np
 
@@ -77,6 +77,30 @@ class Dependencies:
                         found.add(place)
                         waiting.append(place)
         return found
+
+    def circles_and_led(self, among: Collection[Place]) -> tuple[set[Place], set[Place]]:
+        """Those of some formulas that stand in a circle of them, and those that read another one of them."""
+        from scipy.sparse import coo_array  # noqa: PLC0415 - only a workbook with failures pays for it
+        from scipy.sparse.csgraph import connected_components  # noqa: PLC0415
+
+        places = list(among)
+        number = {place: n for n, place in enumerate(places)}
+        edges = [
+            (number[place], number[before])
+            for place in places
+            for area in self.formulas[place].areas
+            for before in self._inside(area)
+            if before in number
+        ]
+        if not edges:
+            return set(), set()
+        readers, read = zip(*edges, strict=True)
+        graph = coo_array(([1] * len(edges), (readers, read)), shape=(len(places), len(places)))
+        _, labels = connected_components(graph, connection="strong")
+        crowded = {label for label, size in Counter(labels.tolist()).items() if size > 1}
+        circles = {place for place, label in zip(places, labels.tolist(), strict=True) if label in crowded}
+        circles |= {places[one] for one, other in edges if one == other}
+        return circles, {places[one] for one in readers}
 
     def _inside(self, area: Area) -> list[Place]:
         if not area.single:

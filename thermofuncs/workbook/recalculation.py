@@ -247,14 +247,10 @@ class _Work:
             why = self.evaluation.failure(place)
             if why is not None:
                 failed[place] = why
-        roots = {place: why for place, why in failed.items() if self._is_root(place, failed)}
+        circles, led = self.dependencies.circles_and_led(failed)
+        roots = {place: why for place, why in failed.items() if place in circles or place not in led}
         self._keep(roots)
         self._keep({place: why for place, why in failed.items() if place not in self.kept})
-
-    def _is_root(self, place: Place, failed: Mapping[Place, str]) -> bool:
-        """Whether a failure begins here: in a circle, or with nothing failing that it reads."""
-        before = self.dependencies.precedents([place])
-        return place in before or not any(other in failed for other in before)
 
     # --- the record --------------------------------------------------------------------------------
 

@@ -26,7 +26,7 @@ from thermofuncs.workbook.formula_tree import (
     formula_tree,
     significant,
 )
-from thermofuncs.workbook.spelling import called_name, near_names
+from thermofuncs.workbook.spelling import called_name, near_names, seems_ours
 from thermofuncs.workbook.tables import structured_area
 
 SITE, FIT, MAP = "TFSITE", "TFFIT", "TFMAP"
@@ -87,8 +87,8 @@ class Prepared:
 
     @property
     def ours(self) -> bool:
-        """Whether it calls one of our functions."""
-        return bool(self.sites)
+        """Whether it calls one of our functions; of an unreadable formula, whether it seems to."""
+        return bool(self.sites) or (bool(self.reasons) and seems_ours(self.stored.text))
 
     @property
     def written(self) -> str:

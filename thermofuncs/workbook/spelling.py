@@ -12,6 +12,12 @@ _OURS = re.compile(
     r"(?:_xll\.|_xludf\.|_xlfn\.)?(?:_xldudf_TF_|TF\.|TF_)(?P<name>[A-Z][A-Z0-9]*)",
     re.IGNORECASE,
 )
+_SEEMS = re.compile(r"(?<![\w.])(?:_xldudf_TF_|TF\.|TF_)[A-Z][A-Z0-9]*\s*\(", re.IGNORECASE)
+
+
+def seems_ours(formula: str) -> bool:
+    """Whether the text of a formula that cannot be read seems to call one of ours."""
+    return _SEEMS.search(formula) is not None
 
 
 @lru_cache(maxsize=4096)
