@@ -168,7 +168,7 @@ def test_scales_are_the_registry_s(scale: str, kelvins: float) -> None:
     """The four temperature scales agree with the registry's own conversion."""
     words = {"degC": "degree_Celsius", "degF": "degree_Fahrenheit", "degR": "degree_Rankine"}[scale]
     registry = units._registry()
-    from fractions import Fraction  # noqa: PLC0415
+    from fractions import Fraction
 
     ours = convert(kelvins, "K", scale)
     theirs = float(registry.Quantity(Fraction(kelvins), "kelvin").to(words).magnitude)

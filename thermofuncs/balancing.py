@@ -74,9 +74,10 @@ def _column(sign: int, term: Term, formulas: dict[str, Formula]) -> dict[str, Fr
 
 
 def _each_on_both_sides(equation: Equation, formulas: dict[str, Formula], text: str) -> None:
-    sides = []
-    for side in (equation.reactants, equation.products):
-        sides.append({e for t in side if t.species in formulas for e in formulas[t.species].exact})
+    sides = [
+        {e for t in side if t.species in formulas for e in formulas[t.species].exact}
+        for side in (equation.reactants, equation.products)
+    ]
     for element in sorted(sides[0] ^ sides[1]):
         where = "left" if element in sides[0] else "right"
         raise CannotBalance(what=text[:80], why=f"{element} stands on the {where} side only")

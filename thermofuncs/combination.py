@@ -147,7 +147,7 @@ class Combination:
     def outside(self, temperature: float) -> OutsideRange:
         """The error for a temperature [K] outside the range."""
         remark = (
-            f" {temperature:g} looks like degrees Celsius: write \"{temperature:g} degC\"."
+            f' {temperature:g} looks like degrees Celsius: write "{temperature:g} degC".'
             if 0 <= temperature < min(self.data_low, 200.0)
             and self.data_low <= temperature + 273.15 <= self.data_high
             else ""

@@ -47,7 +47,7 @@ def reaction(text: str, data: UserData | None, atm: bool, extrapolate: bool) -> 
 def _found(species: str, data: UserData | None) -> Substance:
     """The substance of an equation; a bare electron has no data here."""
     if species == ELECTRON:
-        raise BareElectron()
+        raise BareElectron
     return find_substance(species, data)
 
 

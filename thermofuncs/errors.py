@@ -551,6 +551,12 @@ class CoefficientNotRead(NotUnderstood):
     template = '{argument} has "{given}": a coefficient is a positive number such as 2, 0.5, 1/2 or ½.'
 
 
+class CoefficientNotGiven(NotUnderstood):
+    """A question mark where a number is needed."""
+
+    template = '{argument} has "{given}": ? is for BALANCED only, a coefficient is needed here.'
+
+
 class NothingReacts(NotUnderstood):
     """Both sides are the same."""
 

@@ -2,7 +2,8 @@
 
 ``CO(g) + 2 H2(g) = CH3OH(g)``: ``=``, ``->``, ``→``, ``⇌`` or ``<=>`` between the sides; coefficients ``2``,
 ``0.5``, ``1/2``, ``½`` or ``1½``; a plus sign directly behind a formula is its charge unless a species follows
-without a space. A bare ``e-`` is an electron.
+without a space. A bare ``e-`` is an electron. A number before water of crystallisation,
+without a space, as in ``2CaSO4·2H2O``, is refused with both readings.
 """
 
 from __future__ import annotations
@@ -15,6 +16,7 @@ from functools import lru_cache
 from typing import Protocol
 
 from thermofuncs.errors import (
+    CoefficientNotGiven,
     CoefficientNotRead,
     DecimalComma,
     EmptySide,
@@ -22,6 +24,7 @@ from thermofuncs.errors import (
     NothingReacts,
     NotOneSeparator,
     ThermofuncsError,
+    TwoReadings,
     Unbalanced,
 )
 from thermofuncs.substances.formulas import parse_species
@@ -30,13 +33,27 @@ ELECTRON = "e-"
 LONGEST = 8192
 BALANCE_TOLERANCE = 1e-9
 
-_SEPARATOR = re.compile(r"<=>|<->|-->|->|=>|[=→⇌⇄⟶]")
-_VULGAR = {"½": "1/2", "⅓": "1/3", "⅔": "2/3", "¼": "1/4", "¾": "3/4", "⅕": "1/5", "⅙": "1/6", "⅛": "1/8"}
+_SEPARATOR = re.compile(r"<=>|<->|(?<= )-->|->|=>|[=→⇌⇄⟶]")
+_PLAIN = str.maketrans({"−": "-", "＋": "+", "＝": "=", **dict.fromkeys("\u200b\u200c\u200d\u2060\ufeff")})
+_VULGAR = {
+    "½": "1/2", "⅓": "1/3", "⅔": "2/3", "¼": "1/4", "¾": "3/4", "⅕": "1/5", "⅖": "2/5", "⅗": "3/5", "⅘": "4/5",
+    "⅙": "1/6", "⅚": "5/6", "⅛": "1/8", "⅜": "3/8", "⅝": "5/8", "⅞": "7/8",
+}  # fmt: skip
+_DIGITS = "[0-9]{1,15}"
+_PARTS = "".join(_VULGAR)
 _COEFFICIENT = re.compile(
-    r"(\?|\d+ ?/ ?\d+|\d+\.\d+|\.\d+|\d+[½⅓⅔¼¾⅕⅙⅛]|\d+|[½⅓⅔¼¾⅕⅙⅛])(?![\d.])(?: ?[·×] ?| ?)(?=\S)"
+    rf"(\?|{_DIGITS} ?/ ?{_DIGITS}|{_DIGITS}\.{_DIGITS}|\.{_DIGITS}|{_DIGITS}[{_PARTS}]|{_DIGITS}|[{_PARTS}])"
+    r"(?![0-9.,/])( ?[·×] ?| ?)(?=\S)"
 )
-_COMMA = re.compile(r"\d+,\d+(?=[\sA-Z(])")
-_NUMBERED_NAME = re.compile(r"\d+(?:,\d+)*-[A-Za-z]")
+_COMMA = re.compile(r"[0-9]{1,15},[0-9]{1,15}(?=[\sA-Z(\[]|e-)")
+_NUMBERED_NAME = re.compile(r"[0-9]+(?:,[0-9]+)*-[A-Za-z]")
+_NUMBER = re.compile(r"\(?[0-9.+*·×/-]")
+_ELECTRONS = frozenset({"e-", "e–", "e⁻", "e^-", "e(-)"})
+_WATER = re.compile("[·*•⋅∙]")
+_ENDED = re.compile(r"(?: |[⁺⁻-]|\((?:g|l|s|cr|aq)\))\Z")
+# no sign, closing bracket, phase, or a charge number as in Fe+3
+_SPECIES_AHEAD = re.compile(r"(?![0-9]+(?:[ (+]|\Z))[^\s+)\]}^(\[{]|[(\[{](?![IVL])[A-Z]")
+_SPACED_PHASE = re.compile(r" \((g|l|s|cr|aq)\)$")
 
 
 class Composed(Protocol):
@@ -121,13 +138,14 @@ def _written_phase(species: str) -> str | None:
         return found[1] if found else None
 
 
-def parse_equation(text: str, argument: str = "reaction") -> Equation:
+def parse_equation(text: str, argument: str = "reaction", *, unknowns: bool = False) -> Equation:
     """Read an equation.
 
     Parameters
     ----------
     text : str.
     argument : str. The name used in an error's sentence.
+    unknowns : bool. Whether ``?`` may stand for a coefficient.
 
     Returns
     -------
@@ -135,8 +153,8 @@ def parse_equation(text: str, argument: str = "reaction") -> Equation:
 
     Raises
     ------
-    NotOneSeparator, EmptySide, CoefficientNotRead, DecimalComma, NothingReacts, EquationTooLong:
-        the sentence says what stands where and what would do.
+    NotOneSeparator, EmptySide, CoefficientNotRead, CoefficientNotGiven, DecimalComma, TwoReadings, NothingReacts,
+    EquationTooLong: the sentence says what stands where and what would do.
 
     Examples
     --------
@@ -144,16 +162,22 @@ def parse_equation(text: str, argument: str = "reaction") -> Equation:
     '2 H2(g) + O2(g) = 2 H2O(g)'
     """
     found = _parsed(text)
-    if isinstance(found, Equation):
-        return found
-    kind, data = found
-    raise kind(argument=argument, **data)
+    if not isinstance(found, Equation):
+        kind, data = found
+        raise kind(argument=argument, **data)
+    if not unknowns:
+        for term in (*found.reactants, *found.products):
+            if term.unknown:
+                raise CoefficientNotGiven(argument=argument, given=str(term)[:60])
+    return found
 
 
 Failure = tuple[type[ThermofuncsError], dict[str, str]]
 
 
-class _Stop(Exception):  # noqa: N818  carries a failure to the cache
+class _Stop(Exception):
+    """Carries a failure to the cache."""
+
     def __init__(self, kind: type[ThermofuncsError], **data: str) -> None:
         super().__init__()
         self.failure: Failure = (kind, data)
@@ -170,7 +194,7 @@ def _parsed(text: str) -> Equation | Failure:
 def _equation(text: str) -> Equation:
     if len(text) > LONGEST:
         raise _Stop(EquationTooLong, given=text[:40], most=str(LONGEST))
-    line = " ".join(text.replace("−", "-").replace("＋", "+").split())
+    line = " ".join(text.translate(_PLAIN).split())
     sides = _SEPARATOR.split(line)
     if len(sides) != 2:
         raise _Stop(NotOneSeparator, given=line[:80], count=str(len(sides) - 1))
@@ -181,39 +205,53 @@ def _equation(text: str) -> Equation:
 
 
 def _split_side(side: str, line: str) -> list[str]:
-    """The terms of a side: a plus is a separator behind a space, or directly before a species."""
+    """The terms of a side: a plus is a separator behind a space, a phase or a sign, or before a species."""
     terms: list[str] = []
-    start = 0
+    start = depth = 0
     for i, sign in enumerate(side):
-        if sign != "+":
+        depth += (sign in "([{") - (sign in ")]}")
+        if sign != "+" or depth > 0:
             continue
-        before, after = side[i - 1 : i], side[i + 1 : i + 2]
-        if before == " " or (before and before != "^" and after not in ("", " ", "+", "(", ")")):
+        if _ENDED.search(side, max(0, i - 4), i) or (side[start:i].strip() and _SPECIES_AHEAD.match(side, i + 1)):
             terms.append(side[start:i].strip())
             start = i + 1
     terms.append(side[start:].strip())
     if not all(terms):
         raise _Stop(EmptySide, given=line[:80])
+    for term in terms:
+        if "+ " in term:
+            one, other = term.replace("+ ", " + ", 1), term.replace("+ ", "+ + ", 1)
+            raise _Stop(TwoReadings, given=term[:60], one=one[:60], other=other[:60])
     return terms
 
 
 def _term(text: str) -> Term:
     if _NUMBERED_NAME.match(text):
-        return Term(text, None)
+        return Term(_spelled(text), None)
     if found := _COMMA.match(text):
         raise _Stop(DecimalComma, given=text[:60], proposal=found[0].replace(",", "."))
     found = _COEFFICIENT.match(text)
     if found is None:
-        if re.match(r"[\d.+-]", text):
+        if _NUMBER.match(text) or text[0] == "?":
             raise _Stop(CoefficientNotRead, given=text[:60])
-        return Term(text, None)
+        return Term(_spelled(text), None)
     species = text[found.end() :].strip()
-    if found[1] == "?":
-        return Term(species, None, unknown=True)
-    number = _number(found[1])
-    if number <= 0 or re.match(r"[\d.]", species):
+    if (_NUMBER.match(species) or species[0] == "?") and not _NUMBERED_NAME.match(species):
         raise _Stop(CoefficientNotRead, given=text[:60])
-    return Term(species, number)
+    if found[1] == "?":
+        return Term(_spelled(species), None, unknown=True)
+    if not found[2] and (dot := _WATER.search(species)):
+        counted = f"({species[: dot.start()]}){found[1]}{species[dot.start() :]}"
+        raise _Stop(TwoReadings, given=text[:60], one=f"{found[1]} {species}"[:60], other=counted[:60])
+    number = _number(found[1])
+    if number <= 0:
+        raise _Stop(CoefficientNotRead, given=text[:60])
+    return Term(_spelled(species), number)
+
+
+def _spelled(species: str) -> str:
+    """One spelling of the electron, and of a phase behind a space."""
+    return ELECTRON if species in _ELECTRONS else _SPACED_PHASE.sub(r"(\1)", species)
 
 
 def _number(text: str) -> Fraction:

@@ -10,6 +10,7 @@ how the number came about.
 from __future__ import annotations
 
 import math
+from itertools import pairwise
 
 from thermofuncs.combination import Combination, Member
 from thermofuncs.errors import NotAFunctionOfData, OutsideDouble, UncertaintyUnknown
@@ -266,7 +267,7 @@ def extremes_and_samples(table: Combination, low: float, high: float) -> list[fl
     """Temperatures between which ln K is smooth and close to monotonic, ends and joints included. [K]"""
     joints = [low, *(t for t in table.uppers if low < t < high), high]
     points: list[float] = []
-    for a, b in zip(joints, joints[1:], strict=False):
+    for a, b in pairwise(joints):
         count = max(4, math.ceil(48 * math.log(b / a)))
         points += [a * (b / a) ** (i / count) for i in range(count)]
     return [*points, high]

@@ -67,8 +67,8 @@ def test_cell_of_an_array(maker: Maker) -> None:
         ("S!A1", "S!A1: it holds the constant 8.0, and no formula."),
         ("S!Z9", "S!Z9: it is blank."),
         ("S!C1", "S!C1: its formula =SUM(B1) calls no function of ours."),
-        ("S!D1", "S!D1: it keeps its stored value, because it calls TF.NONE, which is no function of this "
-         "version; near names: none."),
+        ("S!D1", ("S!D1: it keeps its stored value, because it calls TF.NONE, which is no function of this "
+         "version; near names: none.")),
     ],
 )
 def test_no_such_cell(maker: Maker, cell: str, sentence: str) -> None:

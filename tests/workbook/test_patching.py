@@ -72,7 +72,7 @@ def test_cell(maker: Maker, before: str, new: Stored, after: str) -> None:
 
 def test_prefixed_elements(maker: Maker) -> None:
     """A part whose elements carry a namespace prefix keeps it, in new elements too."""
-    before = '<x:row><x:c/><x:c><x:f>X()</x:f></x:c></x:row>'
+    before = "<x:row><x:c/><x:c><x:f>X()</x:f></x:c></x:row>"
     after = '<x:row><x:c/><x:c><x:f>X()</x:f><x:v>5</x:v></x:c><x:c r="C1"><x:v>6</x:v></x:c></x:row>'
     assert patched(maker, sheet(before, "x"), {(1, 2): 5.0, (1, 3): 6.0}) == sheet(after, "x")
 

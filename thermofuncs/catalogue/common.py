@@ -6,7 +6,7 @@ from thermofuncs.catalogue.declaration import Argument
 
 REACTION = Argument("reaction", "the reaction as equation text, balanced", "text")
 SUBSTANCE = Argument("substance", "formula with its phase, or an everyday name", "text")
-TEMPERATURE = Argument("T", "temperature: a number in kelvin or a text such as \"350 degC\"", "temperature", "K")
+TEMPERATURE = Argument("T", 'temperature: a number in kelvin or a text such as "350 degC"', "temperature", "K")
 UNIT = Argument("unit", "unit of the answer", "unit", optional=True)
 DATA = Argument("data", "a worksheet table of your own data, which goes first", "data", optional=True)
 OPTIONS = Argument("options", "words: extrapolate, atm, degC, degF", "options", optional=True)

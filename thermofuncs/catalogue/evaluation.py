@@ -151,9 +151,7 @@ def run(function: Function, arguments: Sequence[object], record: Record | None) 
     return result
 
 
-def _read(
-    function: Function, arguments: Sequence[object], options: Options
-) -> tuple[list[object], str | None]:
+def _read(function: Function, arguments: Sequence[object], options: Options) -> tuple[list[object], str | None]:
     """The arguments read, in order without the unit of the answer, which stands apart."""
     values: list[object] = []
     unit: str | None = None
@@ -161,43 +159,52 @@ def _read(
     given = len(arguments)
     for i, argument in enumerate(function.arguments):
         if argument.variadic:
-            values.append([a for a in arguments[i:]])
+            values.append(list(arguments[i:]))
             break
         value = arguments[i] if i < given else None
-        if value is None or value is BLANK:
-            if argument.kind == "options":
-                values.append(options)
-            elif not argument.optional:
-                wrong.append(missing(function, argument, blank=value is BLANK))
-            elif argument.kind not in ("unit", "input unit"):
-                values.append(None)
-            continue
+        kind = argument.kind
         if type(value) is CellError:
             raise PassedError(value)
-        if argument.kind == "options":
+        if kind == "options":
             values.append(options)
-        elif argument.kind == "any":
-            values.append(value)
-        else:
-            try:
-                if argument.unit_from:
-                    value = in_stated_unit(function, arguments, argument, value)
-                read = READERS[argument.kind](value, argument, options)
-                if argument.kind == "unit":
-                    unit = _checked_unit(function, cast("str", read), argument)
-                    continue
-            except ThermofuncsError as error:
-                wrong.append(error)
-                continue
-            if argument.kind != "input unit":
-                values.append(read)
-    if len(wrong) == 1:
-        raise wrong[0]
+            continue
+        try:
+            read = _read_one(function, arguments, argument, value, options)
+        except ThermofuncsError as error:
+            wrong.append(error)
+            continue
+        if kind == "unit":
+            unit = cast("str | None", read)
+        elif kind != "input unit":
+            values.append(read)
     if wrong:
-        together = BadArguments(text=" ".join(error.sentence for error in wrong))
-        together.worksheet_value = wrong[0].worksheet_value  # type: ignore[misc]  # of this one instance
-        raise together
+        raise _together(wrong)
     return values, unit
+
+
+def _read_one(
+    function: Function, arguments: Sequence[object], argument: Argument, value: object, options: Options
+) -> object:
+    """One argument read; None where an optional one is left out or blank."""
+    if value is None or value is BLANK:
+        if argument.optional:
+            return None
+        raise missing(function, argument, blank=value is BLANK)
+    if argument.kind == "any":
+        return value
+    if argument.unit_from:
+        value = in_stated_unit(function, arguments, argument, value)
+    read = READERS[argument.kind](value, argument, options)
+    return _checked_unit(function, cast("str", read), argument) if argument.kind == "unit" else read
+
+
+def _together(wrong: list[ThermofuncsError]) -> ThermofuncsError:
+    """One error for all arguments that are wrong, of the kind of the first."""
+    if len(wrong) == 1:
+        return wrong[0]
+    together = BadArguments(text=" ".join(error.sentence for error in wrong))
+    together.worksheet_value = wrong[0].worksheet_value  # type: ignore[misc]  # of this one instance
+    return together
 
 
 def _checked_unit(function: Function, unit: str, argument: Argument) -> str:
@@ -313,25 +320,45 @@ def _over_temperatures(
     """One call of the array path for all cells that are plain temperatures, the scalar path for the rest."""
     import numpy as np  # noqa: PLC0415  a single cell does not pay for the array path
 
-    argument = function.arguments[place]
     given = cast("Any", arguments[place])
-    single = list(arguments)
-    is_array = not isinstance(given, list)
-    if is_array and given.dtype.kind in "fiu":
+    if not isinstance(given, list) and given.dtype.kind in "fiu" and given.size:
         flat = np.ascontiguousarray(given, dtype=np.float64).ravel()
-        single[place] = float(flat[0]) if flat.size else 1.0
-        values, unit = _read(function, single, options)
+        values, unit = _read_at(function, arguments, options, place, float(flat[0]))
         try:
-            result = _vector(function, values, unit, place, _in_kelvin(flat, options))
+            return _vector(function, values, unit, place, _in_kelvin(flat, options)).reshape(given.shape)
         except ThermofuncsError:
             pass  # at least one cell has no answer: each cell then says for itself
-        else:
-            return result.reshape(given.shape)
-    rows = _rows(given)
     _shape(function, arguments)
+    answer, kelvins, places = _sorted_out(_rows(given), function.arguments[place], options)
+    if not kelvins:
+        return answer
+    values, unit = _read_at(function, arguments, options, place, kelvins[0])
+    try:
+        results = _vector(function, values, unit, place, np.array(kelvins)).tolist()
+    except ThermofuncsError:
+        results = [_scalar(function, values, unit, place, t) for t in kelvins]
+    for (i, j), value in zip(places, results, strict=True):
+        answer[i][j] = value
+    return answer
+
+
+def _read_at(
+    function: Function, arguments: Sequence[object], options: Options, place: int, temperature: float
+) -> tuple[list[object], str | None]:
+    """The other arguments read, with one temperature in the place of the range."""
+    single = list(arguments)
+    single[place] = temperature
+    values, unit = _read(function, single, options)
+    return values, unit
+
+
+def _sorted_out(
+    rows: list[list[object]], argument: Argument, options: Options
+) -> tuple[list[list[object]], list[float], list[tuple[int, int]]]:
+    """The answer with its blanks and errors, and the temperatures [K] that are to be computed, with their places."""
+    answer: list[list[object]] = [[NOT_AVAILABLE] * len(row) for row in rows]
     kelvins: list[float] = []
     places: list[tuple[int, int]] = []
-    answer: list[list[object]] = [[NOT_AVAILABLE] * len(row) for row in rows]
     for i, row in enumerate(rows):
         for j, cell in enumerate(row):
             try:
@@ -341,17 +368,7 @@ def _over_temperatures(
                 answer[i][j] = passed.error
             except ThermofuncsError as error:
                 answer[i][j] = error.as_cell()
-    if not kelvins:
-        return answer
-    single[place] = kelvins[0]
-    values, unit = _read(function, single, PLAIN if not function.options else options)
-    try:
-        results = _vector(function, values, unit, place, np.array(kelvins)).tolist()
-    except ThermofuncsError:
-        results = [_scalar(function, values, unit, place, t) for t in kelvins]
-    for (i, j), value in zip(places, results, strict=True):
-        answer[i][j] = value
-    return answer
+    return answer, kelvins, places
 
 
 def _temperature(cell: object, argument: Argument, options: Options) -> float:

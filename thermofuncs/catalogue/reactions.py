@@ -27,7 +27,7 @@ from thermofuncs.working import Record
 GROUP = "Reactions"
 LN10 = math.log(10.0)
 ACTIVITIES = Argument(
-    "activities", "two columns: species, and activity or quantity such as \"0.3 atm\"", "table"
+    "activities", 'two columns: species, and activity or quantity such as "0.3 atm"', "table"
 )
 
 Scalar = Callable[[Combination, float, Record | None], float]
@@ -66,7 +66,7 @@ def _keq_array(table: Combination, t: Any) -> Any:  # noqa: ANN401  numpy arrays
     return np.exp(natural)
 
 
-def _over_temperature(  # noqa: D103
+def _over_temperature(
     name: str, summary: str, unit: str, scalar: Scalar, vector: Callable[[Combination, Any], Any], *,
     with_unit: bool,
 ) -> Function:
@@ -122,7 +122,7 @@ def teq(
 
 
 def ln_q(reaction: str, activities: list[list[object]], record: Record | None = None) -> float:
-    """ln Q of a table of activities."""
+    """Ln Q of a table of activities."""
     return quotient.ln_quotient(reaction, activities, record)
 
 

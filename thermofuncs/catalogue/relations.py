@@ -21,7 +21,7 @@ def temperature(name: str, meaning: str, *, optional: bool = False) -> Argument:
 
 
 UNIT = Argument("unit", "unit of the answer", "unit", optional=True)
-T = temperature("t", "temperature: a number in kelvin or a text such as \"350 degC\"")
+T = temperature("t", 'temperature: a number in kelvin or a text such as "350 degC"')
 DRH = number("drh", "reaction enthalpy", "kJ/mol")
 DRS = number("drs", "reaction entropy", "J/(mol K)")
 DRCP = number("drcp", "reaction heat capacity, taken as constant", "J/(mol K)", optional=True)
@@ -30,7 +30,7 @@ T_REF = temperature("t_ref", "temperature that drh and drs belong to, 298.15 K w
 CONSTANTS = Argument(
     "constants", "the constants in the form's order; behind them, where known, lowest and highest T", "list"
 )
-FORM = Argument("form", "the form, such as \"Antoine lg mmHg degC\" or \"five-constant\"", "text")
+FORM = Argument("form", 'the form, such as "Antoine lg mmHg degC" or "five-constant"', "text")
 EXPONENTS = Argument("exponents", "range of the exponents n of Tⁿ", "list")
 POWER_CONSTANTS = Argument("constants", "range of the constants, for T in kelvin", "list")
 
@@ -46,7 +46,7 @@ def drg_hs(
 def lnk_hs(
     drh: float, drs: float, t: float, drcp: float | None, t_ref: float | None, record: Record | None = None
 ) -> float:
-    """ln K from typed ΔrH° and ΔrS°."""
+    """Ln K from typed ΔrH° and ΔrS°."""
     reference = REFERENCE_TEMPERATURE if t_ref is None else t_ref
     return relations.ln_k_from_h_s(drh, drs, t, drcp, reference=reference, record=record)
 
@@ -54,7 +54,7 @@ def lnk_hs(
 def lnk_at(
     lnk1: float, t1: float, t2: float, drh: float, drcp: float | None, record: Record | None = None
 ) -> float:
-    """ln K carried between temperatures."""
+    """Ln K carried between temperatures."""
     return relations.ln_k_carried(lnk1, t1, t2, drh, drcp, record=record)
 
 

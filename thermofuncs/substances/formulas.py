@@ -175,7 +175,7 @@ def _split_phase(body: str, text: str) -> tuple[str, str | None]:
         return rest, tag
     near = "l" if tag == "1" else recased(tag.translate(SUBSCRIPTS))
     proposal = f"; did you mean {rest}({near})" if near == "l" or (near and _is_group(near)) else ""
-    raise _unread(text, f"({tag[:20]}) is no group of atoms, and no phase such as (g), (s), (alpha){proposal}")
+    raise _unread(text, f"({tag[:20]}) is no group of atoms and no phase such as (g), (s), (alpha){proposal}")
 
 
 def _is_group(tag: str) -> bool:
