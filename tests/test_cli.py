@@ -201,7 +201,7 @@ def test_terminal_codes_are_defused(tmp_path: Path) -> None:
     with xlsxwriter.Workbook(path) as workbook:
         sheet = workbook.add_worksheet("S")
         sheet.write_string("A1", "\x1b[31mred\x07")
-        sheet.write_formula("B1", "=A1&TF.MOLM(\"H2O\")")
+        sheet.write_formula("B1", '=A1&TF.MOLM("H2O")')
     done = run("recalc", str(path))
     assert done.returncode == 0
     assert "\x1b" not in done.stdout

@@ -110,6 +110,13 @@ def test_what_k_cannot_be_is_refused() -> None:
     )
 
 
+def test_temperatures_beyond_reason_are_refused() -> None:
+    """A temperature at which a concentration has no number is an error with its sentence."""
+    for temperature in (1e308, 1e-320):
+        with pytest.raises(OutsideNumbers, match="K on the basis concentration in mol/L is outside the range"):
+            k_on_basis(1.0, "standard", "concentration in mol/L", 1.0, temperature)
+
+
 def test_last_step_is_the_result_bit_for_bit() -> None:
     """The last recorded step of every conversion is its result."""
     record = Record()
@@ -139,8 +146,7 @@ def test_in_unit_refuses_what_does_not_fit() -> None:
     with pytest.raises(WrongDimension) as caught:
         in_unit(1.0, "kJ/mol", "bar")
     assert caught.value.sentence == (
-        "value is in kJ/mol, a unit of molar energy: a unit of pressure is needed, "
-        "such as bar, atm, Pa or psi."
+        "value is in kJ/mol, a unit of molar energy: a unit of pressure is needed, such as bar, atm, Pa or psi."
     )
     with pytest.raises(GaugePressure, match="from_unit has 'psig', a gauge pressure"):
         in_unit(1.0, "psig", "bar")

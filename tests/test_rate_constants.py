@@ -57,10 +57,7 @@ def test_last_step_is_the_result_bit_for_bit() -> None:
     record = Record()
     assert rate_constant_carried(0.3, 300.0, 420.0, 75.0, record) == record.steps[-1].value
     assert record.cautions == [
-        (
-            "Ea is held constant over 120 K; it holds where the mechanism is the same "
-            "and was measured over that range."
-        )
+        ("Ea is held constant over 120 K; it holds where the mechanism is the same and was measured over that range.")
     ]
 
 

@@ -89,9 +89,7 @@ def test_sizes_in_the_cautions_are_the_table_s() -> None:
         (relations.CONSTANT_CP_ERROR, "err_const_dCp"),
     ):
         for temperature, largest, median in _quoted(text):
-            errors = [
-                abs(row[column]) for rows in trap().values() for row in rows if row["T_K"] == temperature
-            ]
+            errors = [abs(row[column]) for rows in trap().values() for row in rows if row["T_K"] == temperature]
             assert len(errors) == 11
             assert f"{max(errors):.2f}" == largest
             if median:
@@ -199,9 +197,7 @@ def test_reaction_sum_refuses_blanks_texts_and_lengths() -> None:
     for cell in ("-110,5", True):
         with pytest.raises(TextInRange) as text:
             reaction_sum([1, -1], [1.0, cell])
-        assert text.value.sentence == (
-            f"values has {cell!r} as cell number 2 in row order: a number is needed."
-        )
+        assert text.value.sentence == (f"values has {cell!r} as cell number 2 in row order: a number is needed.")
     with pytest.raises(DifferentLengths) as lengths:
         reaction_sum([1, -1, 2], [1.0, 2.0])
     assert lengths.value.sentence == (

@@ -133,9 +133,7 @@ def test_no_spelling_behind_a_solidus_has_a_second_reading() -> None:
             assert _unit({**powers, last: -powers[last]}) is None, powers
 
 
-@pytest.mark.parametrize(
-    "text", ["psig", "barg", "bar(g)", "bar g", "bar gauge", "kPag", "kPa(g)", "psi(g)", "atm g"]
-)
+@pytest.mark.parametrize("text", ["psig", "barg", "bar(g)", "bar g", "bar gauge", "kPag", "kPa(g)", "psi(g)", "atm g"])
 def test_gauge_pressure_is_refused(text: str) -> None:
     """A gauge pressure is refused with the remedy."""
     with pytest.raises(GaugePressure) as caught:

@@ -46,9 +46,7 @@ def half_last_digit(printed: str) -> float:
     return 0.5000001 * 10.0 ** (int(exponent or 0) - decimals)
 
 
-@pytest.mark.parametrize(
-    "row", rows("unit_factors.csv"), ids=lambda row: f"{row['from_unit']} {row['into_unit']}"
-)
+@pytest.mark.parametrize("row", rows("unit_factors.csv"), ids=lambda row: f"{row['from_unit']} {row['into_unit']}")
 def test_factor_meets_the_published_one(row: dict[str, str]) -> None:
     """Each conversion factor agrees with NIST SP 811 within half of its last printed digit."""
     assert factor(row["from_unit"], row["into_unit"]) == pytest.approx(
@@ -71,9 +69,7 @@ def test_molar_energies_of_single_particles() -> None:
     assert factor("hartree/particle", "kcal/mol") == pytest.approx(627.509474, abs=1e-6)
 
 
-@pytest.mark.parametrize(
-    "row", rows("codata_constants.csv"), ids=lambda row: f"{row['symbol']} {row['edition']}"
-)
+@pytest.mark.parametrize("row", rows("codata_constants.csv"), ids=lambda row: f"{row['symbol']} {row['edition']}")
 def test_constant_meets_the_codata_edition(row: dict[str, str]) -> None:
     """Each constant has the value and the uncertainty that its CODATA edition prints."""
     found = constant(row["symbol"])
@@ -92,8 +88,7 @@ def test_constant_is_found_by_symbol_and_by_name() -> None:
     with pytest.raises(NoSuchConstant) as caught:
         constant("G")
     assert caught.value.sentence == (
-        "name is 'G', which is not in the list of constants: "
-        "R, F, NA, kB, h, e, c, u, me, mp, Eh, a0, Vm, atm."
+        "name is 'G', which is not in the list of constants: R, F, NA, kB, h, e, c, u, me, mp, Eh, a0, Vm, atm."
     )
 
 
@@ -204,10 +199,7 @@ def test_decimal_comma_is_refused(text: str, proposal: str) -> None:
         (
             "298.15",
             NotAQuantity,
-            (
-                "T is the text '298.15', which has no unit: a text is a number and a unit, "
-                "such as 25 degC or 1.5 bar."
-            ),
+            ("T is the text '298.15', which has no unit: a text is a number and a unit, such as 25 degC or 1.5 bar."),
         ),
         (
             "",

@@ -127,9 +127,7 @@ def test_wrong_scale_is_seen_where_it_leaves_the_curve() -> None:
     assert pole.value.sentence.startswith("t: C + t is -13.15 and must be positive")
     with pytest.raises(NoVapourPressure) as limit:
         vapour_temperature("Antoine lg mmHg degC", WATER, 1e6)
-    assert limit.value.sentence == (
-        "p: 7.50062e+08 mmHg is at or above the limit of the constants, where log p = A."
-    )
+    assert limit.value.sentence == ("p: 7.50062e+08 mmHg is at or above the limit of the constants, where log p = A.")
     with pytest.raises(NoVapourPressure) as none:
         vapour_temperature("five-constant", [*PERRY_WATER, 273.16, 647.096], 1e-9)
     assert none.value.sentence == "p: no temperature from 273.16 to 647.096 K has this vapour pressure."

@@ -10,7 +10,7 @@ from fractions import Fraction
 from math import gcd, lcm
 
 from thermofuncs.errors import CannotBalance, SeveralReactions, WrongSide
-from thermofuncs.reactions import ELECTRON, Equation, Term, differences, parse_equation
+from thermofuncs.reactions import ELECTRON, Equation, Term, differences, missing_text, parse_equation
 from thermofuncs.substances.formulas import Formula, parse_species
 
 MOST_SPECIES = 60
@@ -27,9 +27,8 @@ def balanced(text: str) -> str:
 
     Parameters
     ----------
-    text : str. Equation text. Without any number the smallest whole coefficients are found; where a number
-        or ``?`` stands, what is given stays and the rest is solved for (no number counts as unknown then,
-        too).
+    text : str. Equation text. Without any number the smallest whole coefficients are found; where numbers
+        stand they stay, and every other coefficient, ``?`` or not written, is solved for.
 
     Returns
     -------
@@ -37,33 +36,51 @@ def balanced(text: str) -> str:
 
     Raises
     ------
-    CannotBalance: no coefficients conserve every element and the charge; the sentence names them.
+    CannotBalance: no coefficients conserve every element and the charge; the sentence names what fails.
     SeveralReactions: the coefficients are not unique.
     WrongSide: a species belongs on the other side.
+
+    Examples
+    --------
+    >>> balanced("Fe2O3(s) + CO(g) = Fe(s) + CO2(g)")
+    'Fe2O3(s) + 3 CO(g) = 2 Fe(s) + 3 CO2(g)'
     """
-    equation = parse_equation(text, "equation")
+    equation = parse_equation(text, "equation", unknowns=True)
     formulas = formulas_of(equation)
     terms = [(-1, t) for t in equation.reactants] + [(1, t) for t in equation.products]
-    if len(terms) > MOST_SPECIES:
-        raise CannotBalance(what=text[:80], why=f"it has more than {MOST_SPECIES} species")
+    _each_once([t.species for _, t in terms], text)
     columns = [_column(sign, term, formulas) for sign, term in terms]
-    elements = sorted({element for column in columns for element in column})
-    _each_on_both_sides(equation, formulas, text)
     fixed = {i: t.coefficient for i, (_, t) in enumerate(terms) if t.coefficient is not None}
-    free = [i for i in range(len(terms)) if i not in fixed]
-    matrix = [[columns[i].get(e, Fraction(0)) for i in free] for e in elements]
-    right = [-sum((columns[i].get(e, Fraction(0)) * x for i, x in fixed.items()), Fraction(0)) for e in elements]
-    solution = _with_given(matrix, right, text) if fixed else _smallest(matrix, text)
-    values = dict(zip(free, solution, strict=True)) | fixed
-    wrong = [terms[i][1].species for i, x in values.items() if x is not None and x <= 0]
+    if len(fixed) == len(terms):
+        found = differences(equation, formulas)
+        if found:
+            raise CannotBalance(what=text[:80], why=f"all its coefficients are given and {missing_text(found)}")
+        return str(equation)
+    _each_on_both_sides(equation, formulas, text)
+    solution = _with_given(columns, fixed, text) if fixed else _smallest(columns, text)
+    idle = [terms[i][1].species for i, x in enumerate(solution) if not x]
+    if idle:
+        raise CannotBalance(what=text[:80], why=f"{', '.join(idle)[:80]} takes no part in it: leave it out")
+    wrong = [terms[i][1].species for i, x in enumerate(solution) if x < 0]
     if wrong:
-        raise WrongSide(what=text[:80], species=", ".join(wrong))
-    done = [Term(term.species, values[i]) for i, (_, term) in enumerate(terms)]
+        raise WrongSide(what=text[:80], species=", ".join(wrong)[:80])
+    done = [Term(term.species, x) for (_, term), x in zip(terms, solution, strict=True)]
     n = len(equation.reactants)
     return str(Equation(tuple(done[:n]), tuple(done[n:])))
 
 
-def _column(sign: int, term: Term, formulas: dict[str, Formula]) -> dict[str, Fraction]:
+def _each_once(species: list[str], text: str) -> None:
+    if len(species) > MOST_SPECIES:
+        raise CannotBalance(what=text[:80], why=f"it has more than {MOST_SPECIES} species")
+    twice = next((s for s in species if species.count(s) > 1), None)
+    if twice is not None:
+        raise CannotBalance(what=text[:80], why=f"{twice[:60]} stands in it twice: write it once")
+
+
+Column = dict[str, Fraction]
+
+
+def _column(sign: int, term: Term, formulas: dict[str, Formula]) -> Column:
     if term.species == ELECTRON:
         return {"charge": Fraction(-sign)}
     formula = formulas[term.species]
@@ -81,6 +98,16 @@ def _each_on_both_sides(equation: Equation, formulas: dict[str, Formula], text: 
     for element in sorted(sides[0] ^ sides[1]):
         where = "left" if element in sides[0] else "right"
         raise CannotBalance(what=text[:80], why=f"{element} stands on the {where} side only")
+
+
+def _elements(columns: list[Column]) -> list[str]:
+    """The elements in the order they are met, the charge last."""
+    names = dict.fromkeys(element for column in columns for element in column if element != "charge")
+    return [*names, *(["charge"] if any("charge" in column for column in columns) else [])]
+
+
+def _rows(columns: list[Column], elements: list[str]) -> list[list[Fraction]]:
+    return [[column.get(element, Fraction(0)) for column in columns] for element in elements]
 
 
 def _eliminated(matrix: list[list[Fraction]]) -> tuple[list[list[Fraction]], list[int]]:
@@ -103,13 +130,18 @@ def _eliminated(matrix: list[list[Fraction]]) -> tuple[list[list[Fraction]], lis
     return rows, pivots
 
 
-def _smallest(matrix: list[list[Fraction]], text: str) -> list[Fraction]:
+def _independent(columns: list[Column]) -> int:
+    """How many independent reactions the species allow."""
+    return len(columns) - len(_eliminated(_rows(columns, _elements(columns)))[1])
+
+
+def _smallest(columns: list[Column], text: str) -> list[Fraction]:
     """The one direction of the null space, as smallest whole numbers, positive where it can be."""
-    width = len(matrix[0])
-    rows, pivots = _eliminated(matrix)
+    width = len(columns)
+    rows, pivots = _eliminated(_rows(columns, _elements(columns)))
     loose = [c for c in range(width) if c not in pivots]
     if not loose:
-        raise CannotBalance(what=text[:80], why="only zero coefficients conserve every element and the charge")
+        raise CannotBalance(what=text[:80], why=_first_failing(columns, Column()))
     if len(loose) > 1:
         raise SeveralReactions(what=text[:80], count=len(loose))
     values = [Fraction(0)] * width
@@ -123,14 +155,35 @@ def _smallest(matrix: list[list[Fraction]], text: str) -> list[Fraction]:
     return [Fraction(sign * x, common) for x in whole]
 
 
-def _with_given(matrix: list[list[Fraction]], right: list[Fraction], text: str) -> list[Fraction]:
-    width = len(matrix[0]) if matrix else 0
-    rows, pivots = _eliminated([[*row, b] for row, b in zip(matrix, right, strict=True)])
-    if width in pivots:
-        raise CannotBalance(what=text[:80], why="the given coefficients leave no solution")
-    if len(pivots) < width:
-        raise SeveralReactions(what=text[:80], count=width - len(pivots) + 1)
-    return [rows[i][width] for i in range(width)]
+def _with_given(columns: list[Column], fixed: dict[int, Fraction], text: str) -> list[Fraction]:
+    """The coefficients with the given ones among them."""
+    elements = _elements(columns)
+    free = [i for i in range(len(columns)) if i not in fixed]
+    given = {e: -sum((columns[i].get(e, Fraction(0)) * x for i, x in fixed.items()), Fraction(0)) for e in elements}
+    unknown = [columns[i] for i in free]
+    matrix = [[*row, given[e]] for e, row in zip(elements, _rows(unknown, elements), strict=True)]
+    rows, pivots = _eliminated(matrix)
+    if len(free) in pivots:
+        raise CannotBalance(what=text[:80], why=_first_failing(unknown, given))
+    if len(pivots) < len(free):
+        raise SeveralReactions(what=text[:80], count=_independent(columns))
+    solved = {i: rows[place][-1] for place, i in enumerate(free)}
+    return [(fixed | solved)[i] for i in range(len(columns))]
+
+
+def _first_failing(columns: list[Column], given: Column) -> str:
+    """The first element, in the order written, that cannot be conserved together with those before it."""
+    elements = list(given) or _elements(columns)
+    for n in range(1, len(elements) + 1):
+        rows = _rows(columns, elements[:n])
+        if given:
+            rows = [[*row, given[e]] for e, row in zip(elements, rows, strict=False)]
+        pivots = _eliminated(rows)[1]
+        if len(columns) in pivots or (not given and len(pivots) == len(columns)):
+            break
+    before = ", ".join(elements[: n - 1])
+    also = f" that conserve {before[:60]}" if before else ""
+    return f"{elements[n - 1]} is not conserved by any coefficients{also}" + (" beside those given" if given else "")
 
 
 def imbalance(text: str) -> list[list[object]]:

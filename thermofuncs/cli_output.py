@@ -69,7 +69,9 @@ class Progress:
     ) -> None:
         """Take the bar away."""
         self._timer.cancel()
-        self._bar.stop()
+        self._timer.join()
+        if self._bar.live.is_started:
+            self._bar.stop()
 
     def __call__(self, what: str, done: int, total: int) -> None:
         """Say what is being done."""
@@ -91,10 +93,21 @@ def _table(headers: Sequence[str], rows: Iterable[Sequence[str]], title: str = "
     return table
 
 
+def _print_table(console: Console, table: Table) -> None:
+    """Print a table; into a file or a pipe without the spaces at the ends of its lines."""
+    if console.is_terminal:
+        console.print(table)
+        return
+    with console.capture() as captured:
+        console.print(table)
+    for line in captured.get().splitlines():
+        console.print(line.rstrip(), soft_wrap=True)
+
+
 def _listed(console: Console, title: str, headers: Sequence[str], rows: Sequence[Sequence[str]]) -> None:
     if not rows:
         return
-    console.print(_table(headers, rows[:SHOWN], title))
+    _print_table(console, _table(headers, rows[:SHOWN], title))
     if len(rows) > SHOWN:
         console.print(f"  and {len(rows) - SHOWN} more")
 
@@ -165,7 +178,8 @@ def _show_call(console: Console, number: int, call: CallWorking) -> None:
         for step in call.explanation.steps
     ]
     if rows:
-        console.print(_table(("symbol", "relation", "with numbers", "value", "unit", "source"), rows))
+        headers = ("symbol", "relation", "with numbers", "value", "unit", "source")
+        _print_table(console, _table(headers, rows))
     result = call.explanation.result
     sentence = f" {result.sentence}" if isinstance(result, CellError) else ""
     same = "" if call.same else " This is NOT what the recalculation got."
@@ -185,10 +199,10 @@ def show_value(value: object, unit: str) -> None:
     for row in value:
         items = [item if isinstance(item, str) else "" if item is None else shown_value(item) for item in row]
         table.add_row(*(Text(harmless(item), overflow="fold") for item in items))
-    console.print(table)
+    _print_table(console, table)
 
 
 def show_functions(found: Sequence[Function]) -> None:
     """Print functions with what they give."""
     rows = [(function.signature, function.summary, function.result_unit) for function in found]
-    _console().print(_table(("function", "gives", "unit"), rows))
+    _print_table(_console(), _table(("function", "gives", "unit"), rows))

@@ -198,6 +198,25 @@ class Combination:
             s += power / n
         return h, s
 
+    def minus_g(self, temperature: float) -> float:
+        """−G/(RT) at a temperature [K], which is ln K for a reaction: S/R − H/(RT) as one polynomial.
+
+        The operations are those of the array path in their order, so that both give the same bits wherever
+        both logarithms do.
+        """
+        c = self.at(temperature)
+        a1, a2, a3, a4, a5, a6, a7 = c.cp
+        log, r = math.log(temperature), 1.0 / temperature
+        value = temperature * (a7 / 20)
+        value = (value + a6 / 12) * temperature
+        value = (value + a5 / 6) * temperature
+        value = (value + a4 / 2) * temperature
+        value += (c.b2 - a3) + a3 * log
+        value += r * ((a1 / 2) * r - (a2 + c.b1) - a2 * log)
+        for n, x in c.others:
+            value += x / (n * (n + 1)) * temperature**n
+        return value
+
     @cached_property
     def _limits(self) -> Array:
         import numpy as np  # noqa: PLC0415  a bare import of the engine does not load the array path

@@ -116,9 +116,12 @@ def k_on_basis(
     new, how_new = _unit_pressure(target, temperature, pressure)
     value = k_value
     if old != new and delta_nu != 0.0:
-        ln_value = math.log(k_value) + delta_nu * math.log(old / new)
+        ratio = old / new
+        if not 0.0 < ratio < math.inf:
+            finite(math.inf, f"K on the basis {target}")
+        ln_value = math.log(k_value) + delta_nu * math.log(ratio)
         from_logarithm(ln_value, f"K on the basis {target}", "Keep the logarithm of K instead.")
-        half = (old / new) ** (delta_nu / 2.0)
+        half = ratio ** (delta_nu / 2.0)
         value = k_value * half * half
     if record is not None:
         record.step("u_old", f"unit pressure of the old basis: {source}", how_old, old, "Pa", DEFINITIONS)

@@ -12,7 +12,7 @@ import math
 from collections.abc import Sequence
 
 from thermofuncs.errors import DifferentLengths
-from thermofuncs.relations import numbers, total
+from thermofuncs.relations import ln_ratio, numbers, total
 from thermofuncs.working import Record, shown
 
 DEFINITION = "sum of powers of T"
@@ -36,12 +36,12 @@ def _power(temperature: float, exponent: float) -> float:
 
 def _power_integral(t1: float, t2: float, exponent: float) -> float:
     """∫ Tᵐ⁻¹ dT with m = exponent, over t1 to t2."""
-    # log1p and expm1 keep the digits where T₂ − T₁ or m is small
-    ln_ratio = math.log1p((t2 - t1) / t1)
+    logarithm = ln_ratio(t2, t1)
     if exponent == 0.0:
-        return ln_ratio
+        return logarithm
+    # expm1 keeps the digits where T₂ − T₁ or m is small
     try:
-        return _power(t1, exponent) * math.expm1(exponent * ln_ratio) / exponent
+        return _power(t1, exponent) * math.expm1(exponent * logarithm) / exponent
     except OverflowError:
         return math.inf
 

@@ -21,6 +21,7 @@ from thermofuncs.errors import (
     DecimalComma,
     EmptySide,
     EquationTooLong,
+    FormulaNotRead,
     NothingReacts,
     NotOneSeparator,
     ThermofuncsError,
@@ -52,7 +53,7 @@ _ELECTRONS = frozenset({"e-", "e–", "e⁻", "e^-", "e(-)"})
 _WATER = re.compile("[·*•⋅∙]")
 _ENDED = re.compile(r"(?: |[⁺⁻-]|\((?:g|l|s|cr|aq)\))\Z")
 # no sign, closing bracket, phase, or a charge number as in Fe+3
-_SPECIES_AHEAD = re.compile(r"(?![0-9]+(?:[ (+]|\Z))[^\s+)\]}^(\[{]|[(\[{](?![IVL])[A-Z]")
+_SPECIES_AHEAD = re.compile(r"(?![0-9]+(?: ?\+| ?\Z|\((?:g|l|s|cr|aq)\)))[^\s+)\]}^(\[{]|[(\[{](?![IVL])[A-Z]")
 _SPACED_PHASE = re.compile(r" \((g|l|s|cr|aq)\)$")
 
 
@@ -218,6 +219,8 @@ def _split_side(side: str, line: str) -> list[str]:
     terms.append(side[start:].strip())
     if not all(terms):
         raise _Stop(EmptySide, given=line[:80])
+    if depth:
+        raise _Stop(FormulaNotRead, given=side[:60], why="its brackets do not close each other")
     for term in terms:
         if "+ " in term:
             one, other = term.replace("+ ", " + ", 1), term.replace("+ ", "+ + ", 1)

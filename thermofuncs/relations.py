@@ -53,6 +53,13 @@ def total(terms: Sequence[float], what: str) -> float:
         return finite(math.inf, what)
 
 
+def ln_ratio(above: float, below: float) -> float:
+    """The logarithm of a ratio of positive numbers, to full precision where they are near and far apart."""
+    if 0.5 < above / below < 2.0:
+        return math.log1p((above - below) / below)
+    return math.log(above) - math.log(below)
+
+
 def from_logarithm(ln_value: float, what: str, remedy: str) -> float:
     """The exponential of a logarithm, refused with its value where a cell cannot hold it."""
     try:
@@ -65,9 +72,7 @@ def from_logarithm(ln_value: float, what: str, remedy: str) -> float:
     return value
 
 
-def looks_like_joules(
-    record: Record | None, argument: str, value: float, largest: float = LARGE_MOLAR_ENERGY
-) -> None:
+def looks_like_joules(record: Record | None, argument: str, value: float, largest: float = LARGE_MOLAR_ENERGY) -> None:
     """Caution where a molar energy [kJ/mol] is so large that joules were probably typed."""
     if record is not None and abs(value) > largest:
         record.caution(f"{argument} is {value:.6g} kJ/mol, which is unusually large: is the number in J/mol?")
@@ -177,7 +182,7 @@ def gibbs_energy_from_h_s(
     h, s = enthalpy, entropy
     if heat_capacity is not None:
         h = enthalpy + heat_capacity * (temperature - reference) / 1000.0
-        s = entropy + heat_capacity * math.log(temperature / reference)
+        s = entropy + heat_capacity * ln_ratio(temperature, reference)
     value = finite(h - temperature * s / 1000.0, "ΔrG°")
     if record is not None:
         looks_like_joules(record, "drh", enthalpy)
@@ -267,7 +272,7 @@ def ln_k_carried(
     from_enthalpy = enthalpy * 1000.0 / R * (1.0 / t1 - 1.0 / t2)
     from_cp = 0.0
     if heat_capacity is not None:
-        from_cp = heat_capacity / R * (math.log(t2 / t1) + (t1 - t2) / t2)
+        from_cp = heat_capacity / R * (ln_ratio(t2, t1) + (t1 - t2) / t2)
     value = finite(ln_k + from_enthalpy + from_cp, "ln K")
     if record is not None:
         looks_like_joules(record, "drh", enthalpy)
@@ -283,8 +288,7 @@ def ln_k_carried(
             record.step(
                 "ΔrCp° term",
                 "ΔrCp°/R [ln(T₂/T₁) + T₁/T₂ − 1]",
-                f"{shown(heat_capacity, 12)} / {R:.15g}"
-                f" × [ln({t2:.12g}/{t1:.12g}) + {t1:.12g}/{t2:.12g} − 1]",
+                f"{shown(heat_capacity, 12)} / {R:.15g} × [ln({t2:.12g}/{t1:.12g}) + {t1:.12g}/{t2:.12g} − 1]",
                 from_cp,
                 "1",
                 VAN_T_HOFF,
@@ -341,9 +345,7 @@ def numbers(cells: Sequence[object], argument: str) -> list[float]:
     return found
 
 
-def reaction_sum(
-    coefficients: Sequence[object], values: Sequence[object], record: Record | None = None
-) -> float:
+def reaction_sum(coefficients: Sequence[object], values: Sequence[object], record: Record | None = None) -> float:
     """Σ ν x over the substances of a reaction.
 
     Parameters

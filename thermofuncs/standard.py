@@ -129,22 +129,24 @@ def enthalpy_increment(table: Combination, temperature: float, record: Record | 
 
 def gibbs_energy(table: Combination, temperature: float, record: Record | None = None) -> float:
     """ΔG°. [kJ/mol] Parameters as in heat_capacity."""
-    h, s = table.h_and_s(temperature)
-    value = (h - s) * R * temperature / 1000
+    value = table.minus_g(temperature) * -R * temperature / 1000
     if record is not None:
-        _terms(table, temperature, record, h, s)
+        h, s = _terms(table, temperature, record)
         record.step(
-            "ΣνG°", "RT [Σ ν H°/(RT) − Σ ν S°/R]",
+            "ΣνG°", "RT [Σ ν H°/(RT) − Σ ν S°/R], summed as one polynomial",
             f"{shown(R, 12)} × {temperature:.12g} × ({shown(h)} − {shown(s)}) / 1000",
             value, "kJ/mol", DEFINITIONS,
         )
     return value
 
 
-def _terms(table: Combination, temperature: float, record: Record, h: float, s: float) -> None:
+def _terms(table: Combination, temperature: float, record: Record) -> tuple[float, float]:
+    """Record Σ ν H°/(RT) and Σ ν S°/R at a temperature [K], and give them."""
+    h, s = table.h_and_s(temperature)
     _members(table, temperature, record, wanted="H S")
     record.step("ΣνH°/(RT)", "Σ ν H°/(RT)", _merged(table, temperature), h, "1")
     record.step("ΣνS°/R", "Σ ν S°/R", _merged(table, temperature), s, "1")
+    return h, s
 
 
 def ln_k(table: Combination, temperature: float, record: Record | None = None) -> float:
@@ -157,13 +159,12 @@ def ln_k(table: Combination, temperature: float, record: Record | None = None) -
     record : Record, filled where given: also with the slope of ln K, and with what the Gibbs energy at
         298.15 K would have given had it been held constant.
     """
-    h, s = table.h_and_s(temperature)
-    value = s - h
+    value = table.minus_g(temperature)
     if record is not None:
-        _terms(table, temperature, record, h, s)
+        h, s = _terms(table, temperature, record)
         _slope_and_frozen(table, temperature, record, h, value)
         record.step(
-            "ln K", "ΔrS°/R − ΔrH°/(RT)", f"{shown(s)} − {shown(h)}", value, "1", DEFINITIONS
+            "ln K", "ΔrS°/R − ΔrH°/(RT), summed as one polynomial", f"{shown(s)} − {shown(h)}", value, "1", DEFINITIONS
         )
     return value
 
@@ -287,8 +288,7 @@ def equilibrium_temperatures(
     from scipy.optimize import brentq  # noqa: PLC0415  heavy, and only a search needs it
 
     def difference(t: float) -> float:
-        h, s = table.h_and_s(t)
-        return s - h - ln_k_wanted
+        return table.minus_g(t) - ln_k_wanted
 
     def slope(t: float) -> float:
         return table.h_and_s(t)[0]

@@ -151,10 +151,7 @@ _COMPOUND: dict[str, dict[str, int]] = {
 
 _CLASS_OF = {name: group for group, names in NAMES.items() for name in names}
 _CANONICAL = {
-    spelling: name
-    for names in NAMES.values()
-    for name, (_, further) in names.items()
-    for spelling in (name, *further)
+    spelling: name for names in NAMES.values() for name, (_, further) in names.items() for spelling in (name, *further)
 }
 _PATTERNS = {
     frozenset(pattern.items()): (dimension, tuple(pattern))

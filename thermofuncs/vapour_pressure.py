@@ -118,9 +118,7 @@ def _ln_pressure(c: Sequence[float], temperature: float) -> float:
     return finite(c[0] + c[1] / temperature + c[2] * math.log(temperature) + power, "ln p")
 
 
-def vapour_pressure(
-    form: str, constants: Sequence[object], temperature: float, record: Record | None = None
-) -> float:
+def vapour_pressure(form: str, constants: Sequence[object], temperature: float, record: Record | None = None) -> float:
     """The vapour pressure at a temperature.
 
     Parameters
@@ -186,9 +184,7 @@ def vapour_pressure(
     return value
 
 
-def vapour_temperature(
-    form: str, constants: Sequence[object], pressure: float, record: Record | None = None
-) -> float:
+def vapour_temperature(form: str, constants: Sequence[object], pressure: float, record: Record | None = None) -> float:
     """The temperature at which the vapour pressure has a value.
 
     Parameters
@@ -264,13 +260,9 @@ def _root(values: list[float], ln_p: float, record: Record | None) -> float:
         return _ln_pressure(values, temperature) - ln_p
 
     heights = [difference(t) for t in points]
-    rising = [
-        (t, u) for t, u, x, y in zip(points, points[1:], heights, heights[1:], strict=False) if x <= 0.0 < y
-    ]
+    rising = [(t, u) for t, u, x, y in zip(points, points[1:], heights, heights[1:], strict=False) if x <= 0.0 < y]
     if not rising and heights[-1] != 0.0:
-        raise NoVapourPressure(
-            what="p", why=f"no temperature from {low:.6g} to {high:.6g} K has this vapour pressure."
-        )
+        raise NoVapourPressure(what="p", why=f"no temperature from {low:.6g} to {high:.6g} K has this vapour pressure.")
     value = float(brentq(difference, *rising[0], xtol=1e-10, rtol=1e-14)) if rising else high
     if record is not None:
         if len(rising) > 1:

@@ -77,7 +77,8 @@ def test_every_record_agrees_with_the_reference_implementation() -> None:
             a = dict(i.terms)
             table += [i.t_low, i.t_high, *(a.get(float(n), 0.0) for n in range(-2, 5)), i.b1, i.b2]
         theirs = ct.Nasa9PolyMultiTempRegion(row.t_low, row.t_high, 1e5, table)
-        for t in np.linspace(row.t_low, row.t_high, 12)[1:-1]:
+        # off the joints, where the two take different sides
+        for t in row.t_low + (row.t_high - row.t_low) * (np.arange(10) + 0.6173) / 10.0:
             ours = next(i for i in row.intervals if t <= i.t_high)
             h, s = forms.enthalpy(ours, float(t)), forms.entropy(ours, float(t))
             scale = max(1.0, abs(h), abs(s))

@@ -66,7 +66,7 @@ def test_cell_of_an_array(maker: Maker) -> None:
         ("T!B1", "T!B1: the workbook has no such sheet; it has S."),
         ("S!A1", "S!A1: it holds the constant 8.0, and no formula."),
         ("S!Z9", "S!Z9: it is blank."),
-        ("S!C1", "S!C1: its formula =SUM(B1) calls no function of ours."),
+        ("S!C1", "S!C1: its formula =SUM(B1) calls no function of ours; it reads S!B1, which can be explained."),
         ("S!D1", ("S!D1: it keeps its stored value, because it calls TF.NONE, which is no function of this "
          "version; near names: none.")),
     ],

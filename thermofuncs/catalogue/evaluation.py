@@ -210,9 +210,9 @@ def _together(wrong: list[ThermofuncsError]) -> ThermofuncsError:
 def _checked_unit(function: Function, unit: str, argument: Argument) -> str:
     """The unit of the answer, refused where it does not fit the function."""
     if function.result_unit == "K":
-        convert(300.0, "K", unit, argument.name)
+        convert(300.0, unit, "K", argument.name)
     else:
-        factor(function.result_unit, unit, argument.name)
+        factor(unit, function.result_unit, argument.name)
     return unit
 
 

@@ -86,7 +86,8 @@ def molar_mass(record: PrintedRecord, masses: Mapping[str, float]) -> Iterator[s
     if record.name in MASS_EXCEPTIONS or any(symbol not in masses for symbol, _ in record.composition):
         return
     total = sum(masses[symbol] * atoms for symbol, atoms in record.composition)
-    total -= record.charge * masses["e"]
+    if record.charge:
+        total -= record.charge * masses["e"]
     if abs(total - record.molar_mass) > MASS_TOLERANCE * record.molar_mass:
         yield f"{record.place}: the molar mass is {record.molar_mass} and the composition gives {total:.6f}"
 

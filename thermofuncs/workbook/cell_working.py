@@ -130,11 +130,22 @@ def _formula_of(result: Recalculation, place: Place) -> Prepared:
         if area.sheet == place.sheet and area.covers(place.row, place.column):
             if not formula.ours:
                 text = f"its formula {formula.written[:200]} calls no function of ours"
-                raise NoSuchCell(cell=str(place), text=text)
+                raise NoSuchCell(cell=str(place), text=text + _ours_read_by(result, formula))
             return formula
     value = result.book.value(place)
     text = "it is blank" if value is None else f"it holds the constant {value!s:.200}, and no formula"
     raise NoSuchCell(cell=str(place), text=text)
+
+
+def _ours_read_by(result: Recalculation, formula: Prepared) -> str:
+    """The cells with calls of ours that a formula reads, for a sentence."""
+    near = [
+        str(place)
+        for place, other in result.formulas.items()
+        if other.ours and any(a.sheet == place.sheet and a.covers(place.row, place.column) for a in formula.areas)
+    ]
+    more = " and others" if len(near) > 5 else ""
+    return f"; it reads {', '.join(near[:5])}{more}, which can be explained" if near else ""
 
 
 def _call_working(
