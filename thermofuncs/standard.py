@@ -164,7 +164,8 @@ def ln_k(table: Combination, temperature: float, record: Record | None = None) -
         h, s = _terms(table, temperature, record)
         _slope_and_frozen(table, temperature, record, h, value)
         record.step(
-            "ln K", "ΔrS°/R − ΔrH°/(RT), summed as one polynomial", f"{shown(s)} − {shown(h)}", value, "1", DEFINITIONS
+            "ln K", "ΔrS°/R − ΔrH°/(RT), summed as one polynomial", f"{shown(s)} − {shown(h)}", value, "1",
+            DEFINITIONS,
         )
     return value
 

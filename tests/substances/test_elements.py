@@ -2,11 +2,22 @@
 
 from __future__ import annotations
 
+from itertools import pairwise
+
 import pytest
 
 from thermofuncs.errors import NoAtomicMass, NoReferenceElement
-from thermofuncs.substances import atomic_mass, chains, elements, forms, gates, molar_mass, nasa_glenn, printed
-from thermofuncs.substances import reference_element
+from thermofuncs.substances import (
+    atomic_mass,
+    chains,
+    elements,
+    forms,
+    gates,
+    molar_mass,
+    nasa_glenn,
+    printed,
+    reference_element,
+)
 from thermofuncs.substances.index import index
 
 SYMBOLS = sorted(elements.references())
@@ -29,7 +40,7 @@ def test_the_publishers_masses_agree_with_iupac() -> None:
     records = [printed.record(fields) for fields in nasa_glenn.lines()]
     for symbol, mass in gates.atomic_masses(records).items():
         if symbol in elements.masses() and symbol not in ("e", "Rn"):
-            assert mass == pytest.approx(elements.masses()[symbol], rel=6e-4 if symbol in ("Ge", "Li") else 2.5e-4)
+            assert elements.masses()[symbol] == pytest.approx(mass, rel=6e-4 if symbol in ("Ge", "Li") else 2.5e-4)
 
 
 def test_molar_mass_counts_the_electrons() -> None:
@@ -62,7 +73,7 @@ def test_every_element_of_the_data_has_a_reference() -> None:
 def test_the_formation_enthalpy_of_an_element_is_zero(symbol: str) -> None:
     """The enthalpy of an element in its reference phase at 298.15 K is zero within 0.6 J/mol."""
     segment = next(s for s in reference_element(symbol).segments if s.t_low <= 298.15 <= s.t_high)
-    interval = next(i for i in segment.row.intervals if 298.15 <= i.t_high)
+    interval = next(i for i in segment.row.intervals if i.t_high >= 298.15)
     assert abs(forms.enthalpy(interval, 298.15) * 8.314 * 298.15) < 0.6
 
 
@@ -70,7 +81,7 @@ def test_the_formation_enthalpy_of_an_element_is_zero(symbol: str) -> None:
 def test_the_gibbs_energy_of_the_reference_is_continuous(symbol: str) -> None:
     """The Gibbs energy of a reference element does not jump where its phase switches."""
     segments = reference_element(symbol).segments
-    for lower, upper in zip(segments, segments[1:], strict=False):
+    for lower, upper in pairwise(segments):
         at = lower.t_high
         assert lower.t_high == upper.t_low
         values = []

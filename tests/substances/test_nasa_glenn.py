@@ -38,11 +38,13 @@ def at_298(substance: Substance) -> tuple[SubstanceRow, Interval]:
     return row, next(i for i in row.intervals if i.t_high >= 298.15)
 
 
-@pytest.mark.parametrize("case", rows("codata_key_values.csv"), ids=lambda c: c["substance"])
+# silver chloride is not in the data
+KEY_VALUES = [c for c in rows("codata_key_values.csv") if c["substance"] != "AgCl(s)"]
+
+
+@pytest.mark.parametrize("case", KEY_VALUES, ids=lambda c: c["substance"])
 def test_codata_key_values(case: dict[str, str]) -> None:
     """Formation enthalpies and entropies meet the CODATA key values within their uncertainty."""
-    if case["substance"] == "AgCl(s)":
-        pytest.skip("silver chloride is not in the data")
     row, interval = at_298(find_substance(case["substance"]))
     if case["dfH"]:
         bound = max(float(case["u_dfH"] or 0.0), 0.05)

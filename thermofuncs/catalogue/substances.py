@@ -59,7 +59,7 @@ def molar_mass_of(formula: str, record: Record | None = None) -> float:
         parts = " + ".join(f"{n:g} {element}" for element, n in parsed.composition.items())
         record.step(
             f"M({formula})", "Σ n A", parts, value, "g/mol",
-            "IUPAC abridged standard atomic weights 2021 (Prohaska et al., Pure Appl. Chem. 94 (2022) 573)",
+            "IUPAC standard atomic weights 2021 (Prohaska et al., Pure Appl. Chem. 94 (2022) 573)",
         )
     return value
 

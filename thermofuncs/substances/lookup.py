@@ -121,6 +121,8 @@ def _search(text: str, data: UserData | None) -> Substance:
     if text == "e-":
         raise _Stop(AmbiguousSubstance, given=text, candidates="e-(g), the gas of electrons in the data")
     stem, tag = split_phase(text)
+    if not tag and _has_own(text, data):
+        return _by_formula(text, stem, tag, data)
     known = _own(text, stem, tag, data) or _by_label(text) or _by_publishers_name(text, stem, tag)
     if known is not None:
         return known
@@ -131,6 +133,14 @@ def _search(text: str, data: UserData | None) -> Substance:
     if tag and _read(stem) is None and (targets := names.get(normalised(stem))):
         return _by_common_name(text, tag, targets, data)
     return _by_formula(text, stem, tag, data)
+
+
+def _has_own(text: str, data: UserData | None) -> bool:
+    """Whether the user's own table has a formula, in any phase."""
+    formula = _read(text) if data is not None else None
+    if data is None or formula is None or data.substance(text) is not None:
+        return False
+    return bool(data.by_formula(formula_key(tuple(formula.composition.items()), formula.charge)))
 
 
 def _own(text: str, stem: str, tag: str, data: UserData | None) -> Substance | None:
