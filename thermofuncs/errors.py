@@ -491,7 +491,25 @@ class ActivityNotPositive(NotValid):
 class ActivityMissing(NotAvailable):
     """A gas or solute without an activity."""
 
-    template = "activities has no value for {species}: a gas or solute needs one; only a pure phase may be left out."
+    template = (
+        "activities has no value for {species}: a gas or solute needs one; only a pure phase may be left"
+        " out{remark}."
+    )
+
+
+class ActivityRow(NotUnderstood):
+    """A row of the activities that is no pair."""
+
+    template = "activities has {given}: two columns are needed, species and activity."
+
+
+class QuantityOfAnotherPhase(NotUnderstood):
+    """A pressure for a solute, a concentration for a gas, either for a pure phase."""
+
+    template = (
+        'activities of {species}: "{given}" is a {kind}. A gas has a pressure, a solute (aq) a molality or'
+        " concentration; the activity of a pure phase is a number."
+    )
 
 
 class StrangeActivity(NotUnderstood):

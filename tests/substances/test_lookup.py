@@ -16,7 +16,8 @@ from thermofuncs.errors import (
     UnknownSubstance,
 )
 from thermofuncs.substances import find_substance, search
-from thermofuncs.substances.index import index
+from thermofuncs.substances.formulas import parse_species
+from thermofuncs.substances.index import formula_key, index
 
 
 @pytest.mark.parametrize(
@@ -110,6 +111,15 @@ def test_every_label_finds_itself() -> None:
                 found = find_substance(text)
                 assert found.label == text
                 assert found.charge == int(entry.key.partition("|")[2])
+
+
+def test_every_label_that_reads_as_a_formula_has_its_composition() -> None:
+    """A label without a comma reads as its composition and charge; fuels, air and names with bonds do not."""
+    for entry in index().entries:
+        named = entry.label.startswith(("Jet", "JP", "Air", "e-")) or "," in entry.label or "-COOH" in entry.label
+        if not entry.usable and not named:
+            formula = parse_species(entry.label)
+            assert formula_key(tuple(formula.composition.items()), formula.charge) == entry.key, entry.label
 
 
 def test_every_publishers_name_of_a_condensed_record_finds_it() -> None:

@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import csv
 import math
-from fractions import Fraction
 from pathlib import Path
 
 import cantera as ct
@@ -15,7 +14,7 @@ from hypothesis import strategies as st
 from thermofuncs.errors import BadDataTable, CellError
 from thermofuncs.substances import find_substance, forms, nasa_glenn, parse, printed, search
 from thermofuncs.substances.records import Substance
-from thermofuncs.substances.user_table import UserData, reaction_row
+from thermofuncs.substances.user_table import UserData
 from thermofuncs.units import R
 
 REFERENCE = Path(__file__).parent.parent / "reference"
@@ -199,42 +198,27 @@ def test_a_row_never_stands_for_an_isomer() -> None:
     assert find_substance("HCN(g)", parse(table)).segments[0].row.source.dataset == printed.DATASET
 
 
-class Net:
-    """An equation that was read, for the tests."""
-
-    def __init__(self, *terms: tuple[int, str]) -> None:
-        self.terms = terms
-
-    def net(self) -> list[tuple[Fraction, str]]:
-        """Stoichiometric numbers and species."""
-        return [(Fraction(n), species) for n, species in self.terms]
-
-
 def test_a_whole_reaction() -> None:
-    """A reaction row is found forwards, backwards and scaled, and carries its values."""
+    """A reaction row carries its values in the units of the house, and no heat capacity where none is given."""
     table: list[list[object]] = [
-        ["reaction", "drH", "drS", "drCp", "T_ref", "T_low", "T_high", "source"],
-        ["A(aq) = B(aq)", 11.7, -3.0, 44.0, "25 degC", 280.0, 330.0, "calorimeter"],
+        ["reaction", "drH [kcal/mol]", "drS", "drCp", "T_ref", "T_low", "T_high", "source"],
+        ["A(aq) = B(aq)", 2.8, -3.0, 44.0, "25 degC", 280.0, 330.0, "calorimeter"],
+        ["B(aq) = C(aq)", 1.0, 2.0, None, None, 280.0, 330.0, "calorimeter"],
     ]
-    data = parse(table)
-    read = Net((-1, "A(aq)"), (1, "B(aq)"))
-    for factor in (1, -1, 2):
-        asked = Net((-factor, "A(aq)"), (factor, "B(aq)"))
-        found = data.reaction(asked, lambda _: read)
-        assert found is not None
-        assert found[1] == factor
-    assert data.reaction(Net((-1, "A(aq)"), (2, "B(aq)")), lambda _: read) is None
-    cp, s, h = values(reaction_row(data.reactions[0]), 310.0)
-    assert cp == pytest.approx(44.0)
-    assert h == pytest.approx(11700.0 + 44.0 * (310.0 - 298.15))
-    assert s == pytest.approx(-3.0 + 44.0 * math.log(310.0 / 298.15))
+    first, second = parse(table).reactions
+    assert (first.equation, first.drh, first.drs, first.drcp) == ("A(aq) = B(aq)", 2.8 * 4184.0, -3.0, 44.0)
+    assert (first.t_ref, first.t_low, first.t_high) == (298.15, 280.0, 330.0)
+    assert second.drcp is None
+    assert str(second.source) == "worksheet table, B(aq) = C(aq): calorimeter"
 
 
-def test_a_reaction_without_heat_capacity_is_cautioned() -> None:
-    """A reaction row without ΔrCp says that ΔrH° and ΔrS° are held constant."""
-    table: list[list[object]] = [["reaction", "drH", "drS", "T_low", "T_high", "source"], ["A = B", 1.0, 2.0, 280.0, 330.0, "x"]]
-    row = reaction_row(parse(table).reactions[0]).segments[0].row
-    assert "held constant" in row.notes_at(300.0)[0]
+def test_a_row_is_a_substance_or_a_reaction() -> None:
+    """A row with both is refused."""
+    table: list[list[object]] = [
+        ["reaction", "substance", "drH", "drS", "T_low", "T_high", "source"],
+        ["A = B", "ZnO(s)", 1.0, 2.0, 280.0, 330.0, "x"],
+    ]
+    assert "row 2, reaction: the row also has a substance: one or the other" in faults(table)
 
 
 @pytest.mark.parametrize(

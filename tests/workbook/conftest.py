@@ -64,10 +64,14 @@ def _kind(value: object) -> str:
     return f"{len(value)}x{len(value[0])}" if isinstance(value, list) else type(value).__name__
 
 
+def _number(result: object) -> float | str:
+    return result if isinstance(result, float) else str(result)
+
+
 def explain(name: str, arguments: Sequence[object]) -> SimpleNamespace:
     """The one step of HALF."""
     result = evaluate(name, arguments)
-    steps = [Step("h", "h = x / 2", f"h = {arguments[0]} / 2", result, "1")] if name == "HALF" else []
+    steps = [Step("h", "h = x / 2", f"h = {arguments[0]} / 2", _number(result), "1")] if name == "HALF" else []
     return SimpleNamespace(result=result, steps=steps, cautions=["h is only half"])
 
 

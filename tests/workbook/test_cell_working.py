@@ -12,7 +12,7 @@ from thermofuncs.workbook import CellWorking, working
 if TYPE_CHECKING:
     from pathlib import Path
 
-    from conftest import Maker
+    from tests.workbook.conftest import Maker
 
 
 def of(maker: Maker, path: Path, cell: str) -> CellWorking:

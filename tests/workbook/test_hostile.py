@@ -22,11 +22,11 @@ from thermofuncs.errors import (
     WorkbookRefused,
     WorkbookTooLarge,
 )
-from thermofuncs.workbook import Limits
+from thermofuncs.workbook import Limits, recalculate
 from thermofuncs.workbook.book import read_book
 
 if TYPE_CHECKING:
-    from conftest import Maker
+    from tests.workbook.conftest import Maker
 
 CALL = '<row r="1"><c r="A1"><f>TF.HALF(4)</f><v>0</v></c></row>'
 
@@ -286,6 +286,21 @@ def test_array_over_the_whole_sheet(maker: Maker) -> None:
     row = '<row r="1"><c r="A1"><f t="array" ref="A1:XFD1048576">TF.PAIRS()</f><v>7</v></c></row>'
     result = maker.recalculate(maker.package({"S": row}))
     assert [item.reason for item in result.kept] == ["its array covers S!A1:XFD1048576"]
+
+
+def test_endless_evaluation(maker: Maker) -> None:
+    """An evaluation that takes longer than allowed is stopped and refused."""
+
+    def slow(_: str, __: object) -> object:
+        time.sleep(0.05)
+        return 1.0
+
+    path = maker.cells(**{f"A{n}": f"=TF.HALF({n})" for n in range(1, 400)})
+    functions = replace(maker.functions, evaluate=slow)
+    begun = time.monotonic()
+    with pytest.raises(WorkbookTooLarge, match="take longer to evaluate, and the limit is 1 s"):
+        recalculate(path, functions, Limits(seconds=1))
+    assert time.monotonic() - begun < 10
 
 
 def test_longest_cells(maker: Maker) -> None:

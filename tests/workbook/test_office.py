@@ -14,7 +14,7 @@ from thermofuncs.workbook.book import read_book
 if TYPE_CHECKING:
     from collections.abc import Callable
 
-    from conftest import Maker
+    from tests.workbook.conftest import Maker
 
 
 def made(path: Path) -> None:

@@ -12,7 +12,7 @@ from thermofuncs.errors import CellError
 from thermofuncs.workbook import Place, Recalculation
 
 if TYPE_CHECKING:
-    from conftest import Maker
+    from tests.workbook.conftest import Maker
 
 
 def value(result: Recalculation, address: str) -> object:

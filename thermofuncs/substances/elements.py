@@ -35,10 +35,6 @@ from thermofuncs.substances.records import (
 from thermofuncs.units import R
 
 HERE = Path(__file__).parent
-MASS_REFERENCE = (
-    "Atomic weights of the elements 2017 (IUPAC Commission on Isotopic Abundances and Atomic Weights),"
-    " conventional values"
-)
 
 
 def _rows(name: str) -> list[dict[str, str]]:

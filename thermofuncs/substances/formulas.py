@@ -200,12 +200,12 @@ def _is_form(tag: str) -> bool:
 
 def _split_charge(body: str, text: str) -> tuple[str, int]:
     number: str | None
-    if (tag := _TRAILING.search(body)) and (found := _CHARGE_TAG.fullmatch(tag[1].strip())):
-        stem = body[: tag.start()]
-        number, signs = (found[1], found[2]) if found[2] else (found[4], found[3])
-    elif found := _CHARGE_CARET.search(body):
+    if found := _CHARGE_CARET.search(body):
         stem = body[: found.start()]
         number, signs = (found[2], found[3]) if found[3] else (found[5], found[4])
+    elif (tag := _TRAILING.search(body)) and (found := _CHARGE_TAG.fullmatch(tag[1].strip())):
+        stem = body[: tag.start()]
+        number, signs = (found[1], found[2]) if found[2] else (found[4], found[3])
     elif found := _CHARGE_SIGNS.search(body):
         stem, number, signs = body[: found.start()], "", found[0]
         if len(signs) == 1 and (counted := re.search(r"(?<![0-9.])[0-9]+$", stem)):

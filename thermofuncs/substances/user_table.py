@@ -19,28 +19,15 @@ Coefficients of the NASA forms are those of Cp/R, with the gas constant of this 
 from __future__ import annotations
 
 import hashlib
-from collections.abc import Callable, Iterable, Sequence
+from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
-from fractions import Fraction
 from functools import lru_cache
-from typing import Protocol
 
 from thermofuncs.errors import BadDataTable, CellError
-from thermofuncs.substances.common_names import normal_text
-from thermofuncs.substances.forms import anchored, constant
 from thermofuncs.substances.printed import composition_key
-from thermofuncs.substances.records import Note, Segment, Source, Substance, SubstanceRow
+from thermofuncs.substances.records import Source, Substance, SubstanceRow
 from thermofuncs.substances.user_cells import HEADERS, Cells, Faults, Table, column_of
 from thermofuncs.substances.user_rows import substance_of
-from thermofuncs.units import R
-
-
-class Stoichiometry(Protocol):
-    """An equation that was read."""
-
-    def net(self) -> list[tuple[Fraction, str]]:
-        """Stoichiometric numbers and species."""
-        ...
 
 
 @dataclass(frozen=True, slots=True)
@@ -111,64 +98,9 @@ class UserData:
         """Labels and names."""
         return {text for x in self.substances for text in (x.label, x.segments[0].row.name)}
 
-    def reaction(
-        self, equation: Stoichiometry, read: Callable[[str], Stoichiometry]
-    ) -> tuple[UserReaction, Fraction] | None:
-        """The whole reaction that an equation is, and how many times: reversed is minus once.
-
-        Parameters
-        ----------
-        equation : Stoichiometry. The equation asked for.
-        read : callable. Reads the equation text of a row.
-        """
-        wanted = _numbers(equation)
-        for row in self.reactions:
-            given = _numbers(read(row.equation))
-            if given and given.keys() == wanted.keys():
-                times = {wanted[species] / given[species] for species in given}
-                if len(times) == 1:
-                    return row, times.pop()
-        return None
-
     def rows(self) -> list[SubstanceRow]:
         """Every row."""
         return [segment.row for x in self.substances for segment in x.segments]
-
-
-def _numbers(equation: Stoichiometry) -> dict[str, Fraction]:
-    """Stoichiometric numbers by species, spelt one way."""
-    total: dict[str, Fraction] = {}
-    for number, species in equation.net():
-        name = normal_text(species)
-        total[name] = total.get(name, Fraction(0)) + number
-    return total
-
-
-def reaction_row(reaction: UserReaction, entropy_shift: float = 0.0) -> Substance:
-    """A whole reaction as if it were one substance, whose H, S and Cp are those of the reaction.
-
-    Parameters
-    ----------
-    reaction : UserReaction.
-    entropy_shift : float. Added to ΔrS°/R, for another standard pressure.
-    """
-    terms = constant((reaction.drcp or 0.0) / R)
-    h, s = reaction.drh / R, reaction.drs / R + entropy_shift
-    interval = anchored(reaction.t_low, reaction.t_high, terms, h, s, reaction.t_ref)
-    missing = "the data table gives no ΔrCp for it, so ΔrH° and ΔrS° are held constant."
-    row = SubstanceRow(
-        name=reaction.equation,
-        label=reaction.equation,
-        composition={},
-        charge=0,
-        phase="s",
-        molar_mass=0.0,
-        intervals=(interval,),
-        formation_enthalpy=reaction.drh,
-        source=reaction.source,
-        notes=() if reaction.drcp is not None else (Note(missing),),
-    )
-    return Substance(reaction.equation, (Segment(row.t_low, row.t_high, row),))
 
 
 TYPED = tuple[tuple[str, object], ...]

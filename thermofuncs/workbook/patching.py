@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import re
+from bisect import bisect_right
 from collections.abc import Mapping
 
 from thermofuncs.errors import CellError
@@ -43,12 +44,16 @@ class _Patch:
 
     def __init__(self, values: Mapping[tuple[int, int], Stored]) -> None:
         self.values = values
-        self.rows_wanted = {row for row, _ in values}
+        self.wanted: dict[int, list[int]] = {}
+        for row, column in sorted(values):
+            self.wanted.setdefault(row, []).append(column)
         self.cells: dict[int, list[RawCell]] = {}
         self.rows: list[RawRow] = []
+        self.numbers: list[int] = []
+        self.starts: list[int] = []
 
     def cell(self, cell: RawCell) -> None:
-        if cell.row in self.rows_wanted:
+        if cell.row in self.wanted:
             self.cells.setdefault(cell.row, []).append(cell)
 
     def row(self, row: RawRow) -> None:
@@ -57,9 +62,10 @@ class _Patch:
     def edits(self, data: bytes, rows_end: int) -> list[Edit]:
         found: list[Edit] = []
         by_number = {row.number: row for row in self.rows}
-        for number in sorted(self.rows_wanted):
+        self.numbers = sorted(by_number)
+        self.starts = [by_number[number].start for number in self.numbers]
+        for number, wanted in self.wanted.items():
             present = {cell.column: cell for cell in self.cells.get(number, [])}
-            wanted = sorted(column for row, column in self.values if row == number)
             found.extend(
                 (present[c].start, present[c].stop, _changed(data, present[c], self.values[number, c]))
                 for c in wanted if c in present
@@ -76,8 +82,8 @@ class _Patch:
         prefix = _prefix(data, sample.start)
         new = {c: _new_cell(prefix, number, c, self.values[number, c]) for c in columns}
         if row is None:
-            after = [other.start for other in self.rows if other.number > number]
-            at = min(after) if after else rows_end
+            later_row = bisect_right(self.numbers, number)
+            at = self.starts[later_row] if later_row < len(self.starts) else rows_end
             body = b"".join(new.values())
             return [(at, at, b'<%srow r="%d">%s</%srow>' % (prefix, number, body, prefix))]
         opened = tag_end(data, row.start)
