@@ -31,7 +31,8 @@ CASES = [
 ]
 LETTERS = "CHONaFe()+-=^23 0?/.g"
 HARD_TEXTS = st.one_of(st.text(max_size=60), st.text(alphabet=LETTERS, max_size=60))
-ATOMS = st.dictionaries(st.sampled_from(["H", "C", "N", "O", "Na", "Cl", "Fe"]), st.integers(1, 6), min_size=1, max_size=4)
+SYMBOLS = st.sampled_from(["H", "C", "N", "O", "Na", "Cl", "Fe"])
+ATOMS = st.dictionaries(SYMBOLS, st.integers(1, 6), min_size=1, max_size=4)
 
 
 def counted(formula: str) -> dict[str, Fraction]:

@@ -145,7 +145,7 @@ def test_an_equation_of_300_characters_and_more_is_read() -> None:
 def test_a_species_that_stands_several_times_counts_by_its_sum() -> None:
     """What stands twice on a side adds up, and what stands on both sides counts by the difference."""
     net = parse_equation("CO(g) + N2(g) + CO(g) + 3 H2O(g) = H2O(g) + 2 CO2(g) + N2(g) + 2 H2(g)").net()
-    assert dict((species, n) for n, species in net) == {"CO(g)": -2, "H2O(g)": -2, "CO2(g)": 2, "H2(g)": 2}
+    assert {species: n for n, species in net} == {"CO(g)": -2, "H2O(g)": -2, "CO2(g)": 2, "H2(g)": 2}
 
 
 def test_gas_moles_count_written_gases_alone() -> None:
@@ -231,9 +231,9 @@ def test_no_text_makes_the_parser_fail_otherwise(text: str, unknowns: bool) -> N
 
 @pytest.mark.parametrize(
     "text",
-    ["+" * 8000 + "=", "+ " * 4000 + "=A", "A+" * 4000 + "A=B", "(" * 8000 + "=A", "1," * 4000 + "=A", "1" * 8000 + "=A",
-     "1/" * 4000 + "=A", "=" * 8000, "->" * 4000, "A" * 8000 + "=B", " " * 8000 + "=", "½" * 8000 + "A=B", "?" * 8000,
-     "-" * 8000 + ">", "A " * 4000 + "= B", "1-" * 4000 + "= B"],
+    ["+" * 8000 + "=", "+ " * 4000 + "=A", "A+" * 4000 + "A=B", "(" * 8000 + "=A", "1," * 4000 + "=A",
+     "1" * 8000 + "=A", "1/" * 4000 + "=A", "=" * 8000, "->" * 4000, "A" * 8000 + "=B", " " * 8000 + "=",
+     "½" * 8000 + "A=B", "?" * 8000, "-" * 8000 + ">", "A " * 4000 + "= B", "1-" * 4000 + "= B"],
 )  # fmt: skip
 def test_hostile_equations_are_answered(text: str) -> None:
     """A text that would take a backtracking parser for ever is read or refused (a hang is the failure)."""

@@ -14,7 +14,7 @@ from dataclasses import dataclass
 from functools import cached_property
 from typing import TYPE_CHECKING
 
-from thermofuncs.errors import OutsideRange
+from thermofuncs.errors import NothingToExtrapolate, OnlyGibbsEnergy, OutsideRange
 from thermofuncs.substances.forms import Interval, anchored, enthalpy, entropy, heat_capacity
 from thermofuncs.substances.records import Segment, Substance, SubstanceRow
 
@@ -29,6 +29,7 @@ FEW_INTERVALS = 2  # so many joints within a chunk
 STANDARD_EXPONENTS = (-2.0, -1.0, 0.0, 1.0, 2.0, 3.0, 4.0)
 EXTRAPOLATION_LIMITS = (1.0, 20000.0)
 ATM_IN_BAR = 1.01325
+NARROWEST = 2.0  # a row with a narrower range is a value at one temperature, with no Cp to continue [K]
 
 
 @dataclass(frozen=True, slots=True)
@@ -88,6 +89,9 @@ class Combination:
         self.data_low = max(m.substance.t_low for m in members)
         self.data_high = min(m.substance.t_high for m in members)
         self.gas_moles = math.fsum(m.coefficient for m in members if m.substance.phase == "g")
+        self.only_gibbs = next(
+            (m.substance.label for m in members if any(x.row.gibbs_only for x in m.substance.segments)), ""
+        )
         stretches = [(m, self._stretches(m.substance)) for m in members]
         low, high = EXTRAPOLATION_LIMITS if extrapolate else (self.data_low, self.data_high)
         if low >= high:
@@ -115,6 +119,8 @@ class Combination:
                     parts.append((Interval(low, high, x.terms, x.b1, x.b2), segment))
         first, last = parts[0][0], parts[-1][0]
         if self.extrapolate:
+            if substance.t_high - substance.t_low < NARROWEST:
+                raise NothingToExtrapolate(substance=substance.label, at=f"{substance.t_low:g} to {substance.t_high:g}")
             below = continued(first, first.t_low, EXTRAPOLATION_LIMITS[0], first.t_low)
             above = continued(last, last.t_high, last.t_high, EXTRAPOLATION_LIMITS[1])
             parts = [(below, substance.segments[0]), *parts, (above, substance.segments[-1])]
@@ -166,6 +172,11 @@ class Combination:
             raise self.outside(temperature)
         return self.table[bisect_left(self.uppers, temperature)]
 
+    def need_more_than_gibbs(self, name: str) -> None:
+        """Refuse a property of a sum in which a substance has a Gibbs energy alone."""
+        if self.only_gibbs:
+            raise OnlyGibbsEnergy(substance=self.only_gibbs, property=name)
+
     def interval(self, temperature: float) -> tuple[float, float]:
         """Limits of the merged interval at a temperature. [K]"""
         i = bisect_left(self.uppers, temperature)
@@ -173,6 +184,7 @@ class Combination:
 
     def cp(self, temperature: float) -> float:
         """Cp/R at a temperature [K]."""
+        self.need_more_than_gibbs("heat capacity")
         c = self.at(temperature)
         a1, a2, a3, a4, a5, a6, a7 = c.cp
         r = 1.0 / temperature
@@ -255,14 +267,17 @@ class Combination:
 
     def cp_array(self, temperatures: Array) -> Array:
         """Cp/R over a flat array of temperatures [K]."""
+        self.need_more_than_gibbs("heat capacity")
         return self._by_interval(temperatures, _cp_array)
 
     def h_array(self, temperatures: Array) -> Array:
         """H/(RT) over a flat array of temperatures [K]."""
+        self.need_more_than_gibbs("enthalpy")
         return self._by_interval(temperatures, _h_array)
 
     def s_array(self, temperatures: Array) -> Array:
         """S/R over a flat array of temperatures [K]."""
+        self.need_more_than_gibbs("entropy")
         return self._by_interval(temperatures, _s_array)
 
     def minus_g_array(self, temperatures: Array) -> Array:

@@ -10,6 +10,7 @@ from functools import lru_cache
 from thermofuncs.combination import ATM_IN_BAR, Combination, Member
 from thermofuncs.errors import BareElectron, UserReactionBasis
 from thermofuncs.reactions import ELECTRON, Equation, check_balance, parse_equation
+from thermofuncs.substances.common_names import normal_text
 from thermofuncs.substances.elements import reference_element
 from thermofuncs.substances.forms import anchored, constant
 from thermofuncs.substances.lookup import find_substance
@@ -53,9 +54,9 @@ def _found(species: str, data: UserData | None) -> Substance:
 
 def _own_row(equation: Equation, data: UserData) -> tuple[UserReaction, Fraction] | None:
     """The user's row of this reaction, and the factor that makes it this one; negative for its reverse."""
-    wanted = {species: n for n, species in equation.net()}
+    wanted = {normal_text(species): n for n, species in equation.net()}
     for row in data.reactions:
-        given = {species: n for n, species in parse_equation(row.equation, "data").net()}
+        given = {normal_text(species): n for n, species in parse_equation(row.equation, "data").net()}
         if given.keys() != wanted.keys():
             continue
         factors = {wanted[species] / n for species, n in given.items()}

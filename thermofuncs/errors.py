@@ -123,6 +123,12 @@ class OutsideRange(NotValid):
     template = "{argument} = {given} is outside the data of {what}: {ranges}"
 
 
+class NothingToExtrapolate(NotValid):
+    """A row that is a value at one temperature."""
+
+    template = "options has extrapolate, but {substance} is known at {at} K alone: there is no Cp to continue."
+
+
 class OutsideDouble(NotValid):
     """A value is too large or too small for a number."""
 

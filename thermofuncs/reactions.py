@@ -54,6 +54,7 @@ _WATER = re.compile("[·*•⋅∙]")
 _ENDED = re.compile(r"(?: |[⁺⁻-]|\((?:g|l|s|cr|aq)\))\Z")
 # no sign, closing bracket, phase, or a charge number as in Fe+3
 _SPECIES_AHEAD = re.compile(r"(?![0-9]+(?: ?\+| ?\Z|\((?:g|l|s|cr|aq)\)))[^\s+)\]}^(\[{]|[(\[{](?![IVL])[A-Z]")
+_PLUS_AND_SPACE = re.compile(r"\+ (?!\((?:g|l|s|cr|aq)\)$)")
 _SPACED_PHASE = re.compile(r" \((g|l|s|cr|aq)\)$")
 
 
@@ -222,7 +223,7 @@ def _split_side(side: str, line: str) -> list[str]:
     if depth:
         raise _Stop(FormulaNotRead, given=side[:60], why="its brackets do not close each other")
     for term in terms:
-        if "+ " in term:
+        if _PLUS_AND_SPACE.search(term):
             one, other = term.replace("+ ", " + ", 1), term.replace("+ ", "+ + ", 1)
             raise _Stop(TwoReadings, given=term[:60], one=one[:60], other=other[:60])
     return terms

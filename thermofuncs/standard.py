@@ -86,6 +86,7 @@ def heat_capacity(table: Combination, temperature: float, record: Record | None 
 
 def entropy(table: Combination, temperature: float, record: Record | None = None) -> float:
     """ΔS°, or S° of one substance. [J/(mol K)] Parameters as in heat_capacity."""
+    table.need_more_than_gibbs("entropy")
     s = table.h_and_s(temperature)[1]
     value = s * R
     if record is not None:
@@ -97,6 +98,7 @@ def entropy(table: Combination, temperature: float, record: Record | None = None
 
 def enthalpy(table: Combination, temperature: float, record: Record | None = None) -> float:
     """ΔH°. [kJ/mol] Parameters as in heat_capacity."""
+    table.need_more_than_gibbs("enthalpy")
     h = table.h_and_s(temperature)[0]
     value = h * R * temperature / 1000
     if record is not None:
@@ -111,6 +113,7 @@ def enthalpy(table: Combination, temperature: float, record: Record | None = Non
 
 def enthalpy_increment(table: Combination, temperature: float, record: Record | None = None) -> float:
     """H°(T) − H°(298.15 K). [kJ/mol] Parameters as in heat_capacity."""
+    table.need_more_than_gibbs("enthalpy")
     h = table.h_and_s(temperature)[0] * temperature
     h_reference = table.h_and_s(REFERENCE_TEMPERATURE)[0] * REFERENCE_TEMPERATURE
     value = (h - h_reference) * R / 1000
@@ -173,6 +176,8 @@ def ln_k(table: Combination, temperature: float, record: Record | None = None) -
 def _slope_and_frozen(
     table: Combination, temperature: float, record: Record, h: float, value: float
 ) -> None:
+    if table.only_gibbs:
+        return
     slope = h / temperature
     word = "rises" if slope > 0 else "falls" if slope < 0 else "does not move"
     sign = "positive" if slope > 0 else "negative" if slope < 0 else "zero"
@@ -286,6 +291,7 @@ def equilibrium_temperatures(
     ln_k_wanted : float.
     low, high : float. Limits within the data's range. [K]
     """
+    table.need_more_than_gibbs("temperature dependence")
     from scipy.optimize import brentq  # noqa: PLC0415  heavy, and only a search needs it
 
     def difference(t: float) -> float:

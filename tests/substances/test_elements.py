@@ -2,7 +2,9 @@
 
 from __future__ import annotations
 
+import csv
 from itertools import pairwise
+from pathlib import Path
 
 import pytest
 
@@ -20,6 +22,8 @@ from thermofuncs.substances import (
 )
 from thermofuncs.substances.index import index
 
+ABRIDGED = Path(__file__).parent.parent / "reference" / "atomic_weights_abridged.csv"
+
 SYMBOLS = sorted(elements.references())
 
 # K. The gases of these elements have other formation enthalpies in the publisher's set than in the tables of
@@ -33,6 +37,16 @@ OTHER_GASES = {"B": 140.0, "Ba": 70.0, "Sr": 60.0, "Nb": 80.0, "Zr": 95.0, "Co":
 def test_atomic_masses(symbol: str, mass: float) -> None:
     """Atomic masses are the IUPAC conventional values."""
     assert atomic_mass(symbol) == mass
+
+
+def test_the_masses_round_to_the_abridged_atomic_weights() -> None:
+    """Every atomic mass rounds to IUPAC's abridged standard atomic weight of 2021."""
+    lines = ABRIDGED.read_text(encoding="utf-8").splitlines()
+    rows = list(csv.DictReader(line for line in lines if not line.startswith("#")))
+    assert len(rows) == 79
+    for row in rows:
+        printed_digit = 10.0 ** -len(row["abridged"].partition(".")[2])
+        assert abs(atomic_mass(row["symbol"]) - float(row["abridged"])) <= 0.5001 * printed_digit, row
 
 
 def test_the_publishers_masses_agree_with_iupac() -> None:

@@ -130,6 +130,7 @@ REFUSED = [
     ("Fe[OH)3", 'the bracket at ")3" closes none of its kind'),
     ("Fe(OH", 'the bracket at "(OH" is not closed'),
     ("Fe()", "a pair of brackets is empty"),
+    ("H2O( )", "a pair of brackets is empty"),
     ("2H2O", "the number 2 before it is a coefficient"),
     ("3CaO·SiO2", "the number 3 before it is a coefficient"),
     ("e+", "an electron is written e-"),

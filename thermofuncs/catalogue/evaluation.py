@@ -32,8 +32,11 @@ from thermofuncs.errors import (
 from thermofuncs.units import convert, factor
 from thermofuncs.working import Record, Step, shown
 
-NOT_AVAILABLE = CellError("#N/A")
+ANY_TEMPERATURE = 298.15  # stands for a range of temperatures while the other arguments are read
 EXPLAINED_CELLS = 2_000  # a range's cautions are gathered from at most so many of its cells
+
+
+Ranges = dict[int, list[list[object]]]  # by place among the arguments
 
 
 @dataclass(frozen=True, slots=True)
@@ -107,8 +110,8 @@ def explain(name: str, arguments: Sequence[object]) -> Explanation:
     record = Record()
     try:
         function = find(name)
-        if any(isinstance(a, list) for a in _broadcast_values(function, arguments)):
-            return _explained_range(function, arguments)
+        if ranges := _ranges(function, arguments):
+            return _explained_range(function, arguments, ranges)
         result = run(function, arguments, record)
     except PassedError as passed:
         result = passed.error
@@ -117,20 +120,26 @@ def explain(name: str, arguments: Sequence[object]) -> Explanation:
     return Explanation(result, tuple(record.steps), tuple(record.cautions))
 
 
-def _explained_range(function: Function, arguments: Sequence[object]) -> Explanation:
+def _explained_range(function: Function, arguments: Sequence[object], ranges: Ranges) -> Explanation:
     result = evaluate(function.name, arguments)
     record = Record()
-    rows, columns = _shape(function, arguments)
-    for i in range(min(rows * columns, EXPLAINED_CELLS)):
-        one = _arguments_of_cell(function, arguments, *divmod(i, columns))
-        inner = explain(function.name, one)
-        if isinstance(inner.result, CellError) and inner.result.sentence:
-            record.caution(inner.result.sentence)
-        for sentence in inner.cautions:
-            record.caution(sentence)
-    if rows * columns > EXPLAINED_CELLS:
-        record.caution(f"Only the first {EXPLAINED_CELLS} cells of the range were looked at.")
+    if isinstance(result, list):
+        height, width = _shape(function, ranges)
+        for i in range(min(height * width, EXPLAINED_CELLS)):
+            one = _arguments_of_cell(arguments, ranges, *divmod(i, width))
+            inner = _explained_cell(function, one, ranges)
+            if isinstance(inner.result, CellError) and inner.result.sentence:
+                record.caution(inner.result.sentence)
+            for sentence in inner.cautions:
+                record.caution(sentence)
+        if height * width > EXPLAINED_CELLS:
+            record.caution(f"Only the first {EXPLAINED_CELLS} cells of the range were looked at.")
     return Explanation(result, (), tuple(record.cautions))
+
+
+def _explained_cell(function: Function, one: Sequence[object], ranges: Ranges) -> Explanation:
+    stopped = _stopped(function, one, ranges)
+    return explain(function.name, one) if stopped is None else Explanation(stopped, (), ())
 
 
 def run(function: Function, arguments: Sequence[object], record: Record | None) -> object:
@@ -240,11 +249,6 @@ def _from_python(value: object) -> object:
     return value
 
 
-def _broadcast_values(function: Function, arguments: Sequence[object]) -> list[object]:
-    pairs = zip(function.arguments, arguments, strict=False)
-    return [value for argument, value in pairs if argument.kind in BROADCAST]
-
-
 def _rows(value: object) -> list[list[object]]:
     if isinstance(value, list):
         return cells(value)
@@ -252,16 +256,26 @@ def _rows(value: object) -> list[list[object]]:
     return cast("list[list[object]]", (array.reshape(-1, 1) if array.ndim == 1 else array).tolist())
 
 
-def _shape(function: Function, arguments: Sequence[object]) -> tuple[int, int]:
+def _spread(function: Function, arguments: Sequence[object]) -> list[int]:
+    """The places of the arguments that are spread over the answer."""
+    pairs = enumerate(zip(function.arguments, arguments, strict=False))
+    return [i for i, (a, value) in pairs if a.kind in BROADCAST and _is_range(value)]
+
+
+def _ranges(function: Function, arguments: Sequence[object]) -> Ranges:
+    """The arguments that are spread over the answer, as rows, by their place."""
+    return {place: _rows(arguments[place]) for place in _spread(function, arguments)}
+
+
+def _shape(function: Function, ranges: Ranges) -> tuple[int, int]:
     """The shape of the answer: rows against columns give the table of both."""
     shapes: dict[str, tuple[int, int]] = {}
-    for argument, value in zip(function.arguments, arguments, strict=False):
-        if argument.kind in BROADCAST and _is_range(value):
-            rows = _rows(value)
-            width = max((len(row) for row in rows), default=0)
-            if not rows or not width or any(len(row) != width for row in rows):
-                raise ShapesDiffer(shapes=f"{argument.name} is empty or ragged")
-            shapes[argument.name] = (len(rows), width)
+    for place, rows in ranges.items():
+        name = function.arguments[place].name
+        width = max((len(row) for row in rows), default=0)
+        if not rows or not width or any(len(row) != width for row in rows):
+            raise ShapesDiffer(shapes=f"{name} is empty or ragged")
+        shapes[name] = (len(rows), width)
     height = max(r for r, _ in shapes.values())
     width = max(c for _, c in shapes.values())
     if any(r not in (1, height) or c not in (1, width) for r, c in shapes.values()):
@@ -271,43 +285,48 @@ def _shape(function: Function, arguments: Sequence[object]) -> tuple[int, int]:
 
 
 def _arguments_of_cell(
-    function: Function, arguments: Sequence[object], row: int, column: int
+    arguments: Sequence[object], ranges: Ranges, row: int, column: int
 ) -> list[object]:
     """The arguments of one cell of the answer."""
-    one: list[object] = []
-    for i, value in enumerate(arguments):
-        declared = function.arguments[min(i, len(function.arguments) - 1)]
-        if declared.kind in BROADCAST and _is_range(value):
-            rows = _rows(value)
-            line = rows[row if len(rows) > 1 else 0]
-            cell = line[column if len(line) > 1 else 0]
-            one.append(BLANK if cell is None or cell == "" else cell)
-        else:
-            one.append(value)
+    one = list(arguments)
+    for place, rows in ranges.items():
+        line = rows[row if len(rows) > 1 else 0]
+        cell = line[column if len(line) > 1 else 0]
+        one[place] = BLANK if cell is None or cell == "" else cell
     return one
 
 
+def _stopped(function: Function, one: Sequence[object], ranges: Ranges) -> CellError | None:
+    """The error of a cell for which a range holds an error value, or nothing, optional or not."""
+    for place in ranges:
+        if type(error := one[place]) is CellError:
+            return error
+    for place in ranges:
+        if one[place] is BLANK:
+            return missing(function, function.arguments[place], blank=True).as_cell()
+    return None
+
+
 def _over_range(function: Function, arguments: Sequence[object], options: Options) -> object:
-    ranges = [
-        (i, a)
-        for i, a in enumerate(function.arguments)
-        if i < len(arguments) and a.kind in BROADCAST and _is_range(arguments[i])
-    ]
-    if function.vector is not None and len(ranges) == 1 and ranges[0][1].kind == "temperature":
-        return _over_temperatures(function, arguments, options, ranges[0][0])
-    height, width = _shape(function, arguments)
+    spread = _spread(function, arguments)
+    if function.vector is not None and len(spread) == 1 and function.arguments[spread[0]].kind == "temperature":
+        return _over_temperatures(function, arguments, options, spread[0])
+    ranges = _ranges(function, arguments)
+    height, width = _shape(function, ranges)
     return [
         [
-            _cell(function, _arguments_of_cell(function, arguments, row, column))
+            _cell(function, _arguments_of_cell(arguments, ranges, row, column), ranges)
             for column in range(width)
         ]
         for row in range(height)
     ]
 
 
-def _cell(function: Function, arguments: Sequence[object]) -> object:
+def _cell(function: Function, one: Sequence[object], ranges: Ranges) -> object:
+    if (stopped := _stopped(function, one, ranges)) is not None:
+        return stopped
     try:
-        return run(function, arguments, None)
+        return run(function, one, None)
     except PassedError as passed:
         return passed.error
     except ThermofuncsError as error:
@@ -323,16 +342,17 @@ def _over_temperatures(
     given = cast("Any", arguments[place])
     if not isinstance(given, list) and given.dtype.kind in "fiu" and given.size:
         flat = np.ascontiguousarray(given, dtype=np.float64).ravel()
-        values, unit = _read_at(function, arguments, options, place, float(flat[0]))
+        values, unit = _read_at(function, arguments, options, place)
         try:
             return _vector(function, values, unit, place, _in_kelvin(flat, options)).reshape(given.shape)
         except ThermofuncsError:
             pass  # at least one cell has no answer: each cell then says for itself
-    _shape(function, arguments)
-    answer, kelvins, places = _sorted_out(_rows(given), function.arguments[place], options)
+    ranges = _ranges(function, arguments)
+    _shape(function, ranges)
+    values, unit = _read_at(function, arguments, options, place)
+    answer, kelvins, places = _sorted_out(function, place, ranges[place], options)
     if not kelvins:
         return answer
-    values, unit = _read_at(function, arguments, options, place, kelvins[0])
     try:
         results = _vector(function, values, unit, place, np.array(kelvins)).tolist()
     except ThermofuncsError:
@@ -343,24 +363,27 @@ def _over_temperatures(
 
 
 def _read_at(
-    function: Function, arguments: Sequence[object], options: Options, place: int, temperature: float
+    function: Function, arguments: Sequence[object], options: Options, place: int
 ) -> tuple[list[object], str | None]:
-    """The other arguments read, with one temperature in the place of the range."""
+    """The other arguments read, with any temperature in the place of the range."""
     single = list(arguments)
-    single[place] = temperature
-    values, unit = _read(function, single, options)
-    return values, unit
+    single[place] = ANY_TEMPERATURE
+    return _read(function, single, options)
 
 
 def _sorted_out(
-    rows: list[list[object]], argument: Argument, options: Options
+    function: Function, place: int, rows: list[list[object]], options: Options
 ) -> tuple[list[list[object]], list[float], list[tuple[int, int]]]:
     """The answer with its blanks and errors, and the temperatures [K] that are to be computed, with their places."""
-    answer: list[list[object]] = [[NOT_AVAILABLE] * len(row) for row in rows]
+    argument = function.arguments[place]
+    blank = missing(function, argument, blank=True).as_cell()
+    answer: list[list[object]] = [[blank] * len(row) for row in rows]
     kelvins: list[float] = []
     places: list[tuple[int, int]] = []
     for i, row in enumerate(rows):
         for j, cell in enumerate(row):
+            if cell is None or cell == "":
+                continue
             try:
                 kelvins.append(_temperature(cell, argument, options))
                 places.append((i, j))
@@ -372,8 +395,6 @@ def _sorted_out(
 
 
 def _temperature(cell: object, argument: Argument, options: Options) -> float:
-    if cell is None or cell == "":
-        raise PassedError(NOT_AVAILABLE)
     if type(cell) is CellError:
         raise PassedError(cell)
     return cast("float", READERS["temperature"](cell, argument, options))

@@ -6,7 +6,7 @@ from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from functools import lru_cache
 
-from thermofuncs.catalogue.declaration import Argument, Function
+from thermofuncs.catalogue.declaration import BLANK, Argument, Function
 from thermofuncs.errors import (
     BlankArgument,
     CellError,
@@ -187,7 +187,7 @@ def in_stated_unit(function: Function, arguments: Sequence[object], argument: Ar
 def options_of(function: Function, arguments: Sequence[object]) -> Options:
     """The options of a call, or the plain ones."""
     for argument, value in zip(function.arguments, arguments, strict=False):
-        if argument.kind == "options" and value is not None and value != "":
+        if argument.kind == "options" and value is not None and value is not BLANK and value != "":
             if type(value) is CellError:
                 raise PassedError(value)
             text = read_text(value, argument, PLAIN)

@@ -11,6 +11,7 @@ from thermofuncs.catalogue.declaration import Argument, Function
 from thermofuncs.catalogue.reading import Options
 from thermofuncs.combination import Combination
 from thermofuncs.errors import NothingFound
+from thermofuncs.substances import forms
 from thermofuncs.substances.elements import molar_mass
 from thermofuncs.substances.forms import REFERENCE_TEMPERATURE
 from thermofuncs.substances.formulas import parse_formula
@@ -72,13 +73,17 @@ def _formula_text(row: SubstanceRow) -> str:
     return f"{atoms} charge {row.charge:+d}" if row.charge else atoms
 
 
-def _entropy_at_reference(row: SubstanceRow) -> object:
+def _at_reference(row: SubstanceRow) -> list[list[object]]:
+    """Formation enthalpy and entropy at 298.15 K, where the row has them."""
+    if row.gibbs_only:
+        return [["formation enthalpy and entropy", "not in the data: a Gibbs energy at 298.15 K alone", ""]]
     for interval in row.intervals:
         if interval.t_low <= REFERENCE_TEMPERATURE <= interval.t_high:
-            from thermofuncs.substances.forms import entropy  # noqa: PLC0415  name clash with standard.entropy
-
-            return entropy(interval, REFERENCE_TEMPERATURE) * R
-    return ""
+            return [
+                ["formation enthalpy at 298.15 K", row.formation_enthalpy / 1000, "kJ/mol"],
+                ["entropy at 298.15 K", forms.entropy(interval, REFERENCE_TEMPERATURE) * R, "J/(mol K)"],
+            ]
+    return []
 
 
 def _table_of(substance: Substance) -> list[list[object]]:
@@ -94,13 +99,14 @@ def _table_of(substance: Substance) -> list[list[object]]:
         if len(substance.segments) > 1:
             rows.append([f"record {i}", row.label, ""])
         rows += [
-            ["formation enthalpy at 298.15 K", row.formation_enthalpy / 1000, "kJ/mol"],
-            ["entropy at 298.15 K", _entropy_at_reference(row), "J/(mol K)"],
+            *_at_reference(row),
             ["from", segment.t_low, "K"],
             ["to", segment.t_high, "K"],
             ["source", str(row.source), ""],
         ]
-        rows += [["note", note.sentence, ""] for note in row.notes]
+        rows += [["note", sentence, ""] for sentence in dict.fromkeys(note.sentence for note in row.notes)]
+    if substance.remark:
+        rows.append(["remark", substance.remark, ""])
     if substance.stops:
         rows.append(["above", substance.stops, ""])
     return rows

@@ -24,7 +24,15 @@ DEEPEST = 20
 MOST_ATOMS = 10**6
 PHASES = frozenset({"g", "l", "s", "cr", "aq"})
 SHORT_FORMS = frozenset({"gr", "am", "an", "gl", "hcp", "fcc", "bcc"})
-PLAIN_SIGNS = str.maketrans({**dict.fromkeys("−–‑", "-"), **dict.fromkeys("•⋅∙*", "·"), "’": "'", "′": "'"})
+MOST_DIGITS = 15
+PHASE_WORDS = {
+    "gas": "g", "vapour": "g", "vapor": "g", "liq": "l", "liquid": "l", "sol": "s", "solid": "s", "c": "s",
+    "cryst": "s", "crystal": "s", "crystalline": "s", "aqueous": "aq", "1": "l",
+}  # fmt: skip
+PLAIN_SIGNS = str.maketrans({
+    **dict.fromkeys("−–‑", "-"), **dict.fromkeys("•⋅∙*", "·"), "’": "'", "′": "'",
+    **dict.fromkeys("\u200b\u200c\u200d\u2060\ufeff"),
+})  # fmt: skip
 SUBSCRIPTS = str.maketrans("₀₁₂₃₄₅₆₇₈₉", "0123456789")
 SUPERSCRIPTS = dict(zip("⁰¹²³⁴⁵⁶⁷⁸⁹⁺⁻", "0123456789+-", strict=True))
 PAIRS = {")": "(", "]": "[", "}": "{"}
@@ -37,6 +45,7 @@ _CHARGE_SIGNS = re.compile(r"[+-]+$")
 _ROMAN = re.compile(r"[IV]+")
 _NAMED_FORM = re.compile(r"(?:cr)?[IV]+(?:'|-[a-z])?(?:,[IV]+)?")
 _WORD = re.compile(r"[a-zα-ω][\w' ,-]*|[A-Z][a-z'-]{3,}")
+_FIRST_WORD = re.compile(r"[ ,;]+")
 _FACTOR = re.compile(r"([0-9]+/[0-9]+|[0-9]*\.[0-9]+|[0-9]+|½) ?(?=[A-Z(\[{])")
 _MOLECULE = re.compile(r"[0-9]{1,2}(?=[A-Z(\[{])")
 _SYMBOL = re.compile(r"[A-Z][a-z]?")
@@ -161,6 +170,8 @@ def _split_phase(body: str, text: str) -> tuple[str, str | None]:
         return body, None
     tag = found[1].strip()
     rest = body[: found.start()].rstrip()
+    if not tag:
+        raise _unread(text, "a pair of brackets is empty")
     if _CHARGE_TAG.fullmatch(tag):
         return body, None
     if tag in PHASES or tag == "L":
@@ -169,12 +180,14 @@ def _split_phase(body: str, text: str) -> tuple[str, str | None]:
         raise _either(text, f"{rest}({tag.lower()})", rest + tag)
     if _NAMED_FORM.fullmatch(tag):
         return rest, tag
-    if tag[0] in "([{" or (tag[0].isupper() and _is_group(tag)):
+    if not tag or (tag[0].isupper() and _is_group(tag)):
         return body, None
-    if _is_form(tag):
+    word = _FIRST_WORD.split(tag.casefold(), maxsplit=1)[0]
+    near = PHASE_WORDS.get(word, word if word in PHASES else "")
+    if not near and _is_form(tag):
         return rest, tag
-    near = "l" if tag == "1" else recased(tag.translate(SUBSCRIPTS))
-    proposal = f"; did you mean {rest}({near})" if near == "l" or (near and _is_group(near)) else ""
+    near = near or recased(tag.translate(SUBSCRIPTS))
+    proposal = f"; did you mean {rest[-40:]}({near})" if near in PHASES or (near and _is_group(near)) else ""
     raise _unread(text, f"({tag[:20]}) is no group of atoms and no phase such as (g), (s), (alpha){proposal}")
 
 
@@ -270,6 +283,8 @@ def _factor(number: str, text: str) -> Fraction:
 
 
 def _count(number: str, text: str) -> Fraction:
+    if len(number) > MOST_DIGITS:
+        raise _unread(text, f"{number[:20]} has more than {MOST_DIGITS} digits")
     n = Fraction(number)
     if number[0] == "0" and number[1:2] != ".":
         raise _unread(text, f"the count {number[:20]} begins with a zero: is the letter O meant?")
@@ -319,7 +334,9 @@ class _Groups:
             raise _unread(self.text, f"the number {number[:20]} follows no atom or group")
         if self.part[after : after + 1] == ",":
             snippet = self.part[place:][:20]
-            raise _unread(self.text, f'"{snippet}" has a comma: decimals are written with a point')
+            if self.part[after + 1 : after + 2].isdigit():
+                raise _unread(self.text, f'"{snippet}" has a comma: decimals are written with a point')
+            raise _unread(self.text, f'"{snippet}" has a comma and a name behind the formula')
         _refuse_dot_for_water(self.part, place, number, self.text)
         n = _count(number, self.text)
         self.last = {element: x * n for element, x in self.last.items()}
