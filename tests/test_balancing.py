@@ -11,6 +11,7 @@ import pytest
 from hypothesis import assume, given
 from hypothesis import strategies as st
 
+import thermofuncs
 from thermofuncs.balancing import MOST_SPECIES, balanced, imbalance
 from thermofuncs.errors import (
     CannotBalance,
@@ -21,7 +22,7 @@ from thermofuncs.errors import (
     TwoReadings,
     WrongSide,
 )
-from thermofuncs.reactions import parse_equation
+from thermofuncs.reactions import Term, parse_equation
 
 REFERENCE = Path(__file__).parent / "reference" / "balanced_equations.csv"
 CASES = [
@@ -99,11 +100,16 @@ def test_there_are_enough_cases() -> None:
         ("4 NH3(g) + O2(g) = NO(g) + H2O(g)", "4 NH3(g) + 5 O2(g) = 4 NO(g) + 6 H2O(g)"),
         ("Fe2O3(s) + 3 C(s) = Fe(s) + 2 CO(g) + CO2(g)", "4/3 Fe2O3(s) + 3 C(s) = 8/3 Fe(s) + 2 CO(g) + CO2(g)"),
         ("2 H2 + 1 O2 = 2 H2O", "2 H2 + O2 = 2 H2O"),
+        ("H2 + ? O2 = H2O", "H2 + 1/2 O2 = H2O"),
+        ("? H2 + O2 = ? H2O", "2 H2 + O2 = 2 H2O"),
+        ("C2H5OH + ? O2 = ? CO2 + ? H2O", "C2H5OH + 3 O2 = 2 CO2 + 3 H2O"),
+        ("2 C + ? O2 = CO + CO2", "2 C + 3/2 O2 = CO + CO2"),
+        ("Ag^2+ + ? e- = Ag", "Ag^2+ + 2 e- = Ag"),
         ("Na+ + Cl- = NaCl", "Na+ + Cl- = NaCl"),
     ],
 )
 def test_given_coefficients_stay(written: str, expected: str) -> None:
-    """Where numbers are given they stay and the others are solved for."""
+    """Numbers stay and the others are solved for; where ? stands those alone are, and what is not written is 1."""
     assert balanced(written) == expected
 
 
@@ -115,6 +121,8 @@ def test_given_coefficients_stay(written: str, expected: str) -> None:
         ("Na+ = Na", CannotBalance, "charge is not conserved by any coefficients that conserve Na."),
         ("NaCl + H2O = NaCl2 + H2O2", CannotBalance, "O is not conserved by any coefficients that conserve Na, Cl, H."),
         ("5 H2 + O2 = 3 H2O", CannotBalance, "H is not conserved by any coefficients beside those given."),
+        ("? H2 + O2 = H2O", CannotBalance, "beside those given, where what is not written beside ? is 1."),
+        ("H0.12345678901234 + He0.98765432109871 = H2He3", CannotBalance, "a coefficient would have more than 15"),
         ("2 H2 + 2 O2 = 2 H2O", CannotBalance, "all its coefficients are given and 2 O missing on the right."),
         ("H2 + H2 + O2 = H2O", CannotBalance, "H2 stands in it twice: write it once."),
         ("H2 + O2 + CO = H2O + CO", CannotBalance, "CO stands in it twice: write it once."),
@@ -231,6 +239,68 @@ def test_a_balanced_equation_stays(case: tuple[str, str]) -> None:
     assert imbalance(expected)[1][0] == "balanced"
     reverse = str(parse_equation(case[0]).reversed())
     assert sorted(numbers(balanced(reverse))) == sorted(numbers(expected))
+
+
+@given(st.integers(1, 40), st.integers(0, 60), st.integers(0, 12), st.integers(0, 6))
+def test_combustion_follows_its_formula(c: int, h: int, o: int, n: int) -> None:
+    """CcHhOoNn burns with c + h/4 - o/2 of oxygen to c carbon dioxide, h/2 water and n/2 nitrogen."""
+    oxygen = Fraction(c) + Fraction(h, 4) - Fraction(o, 2)
+    assume(oxygen > 0)
+    fuel = f"C{c}" + "".join(f"{symbol}{k}" for symbol, k in (("H", h), ("O", o), ("N", n)) if k)
+    made = {"CO2": Fraction(c), "H2O": Fraction(h, 2), "N2": Fraction(n, 2)}
+    products = [species for species, k in made.items() if k]
+    done = balanced(f"{fuel} + O2 = {' + '.join(products)}")
+    fuel_number, *others = numbers(done)
+    assert [x / fuel_number for x in others] == [oxygen, *(made[species] for species in products)]
+    assert gcd(*(int(x) for x in numbers(done))) == 1
+
+
+@given(st.integers(1, 4), st.integers(1, 4), st.integers(1, 4), st.integers(1, 4))
+def test_salts_exchange_their_ions_by_charge(p: int, q: int, r: int, s: int) -> None:
+    """Salts formed from ions of any charges exchange them in the numbers that neutrality demands."""
+
+    def salt(metal: str, positive: int, anion: str, negative: int) -> str:
+        return f"{metal}{negative // gcd(positive, negative)}({anion}){positive // gcd(positive, negative)}"
+
+    left = f"{salt('Fe', p, 'SO4', r)} + {salt('Ca', q, 'NO3', s)}"
+    right = f"{salt('Fe', p, 'NO3', s)} + {salt('Ca', q, 'SO4', r)}"
+    first, second = balanced(f"{left} = {right}").split(" = ")
+    assert side_total(first) == side_total(second)
+    dissolved = balanced(f"{salt('Fe', p, 'SO4', r)} = Fe^{p}+ + SO4^{r}-")
+    assert numbers(dissolved) == [1, r // gcd(p, r), p // gcd(p, r)]
+
+
+@given(st.integers(1, 9), st.integers(1, 9), st.sampled_from(["e-", "e⁻", "e−", "e(-)", "e^-"]))
+def test_a_half_reaction_takes_the_electrons_of_its_charges(high: int, low: int, electron: str) -> None:
+    """A bare half reaction takes as many electrons as the charge falls by."""
+    assume(high > low)
+    done = balanced(f"Mn^{high}+ + {electron} = Mn^{low}+")
+    assert numbers(done) == [1, high - low, 1]
+
+
+SPELLINGS = [
+    "MnO4- + Fe^2+ + H+ = Mn^2+ + Fe^3+ + H2O", "MnO4-+Fe^2++H+=Mn^2++Fe^3++H2O",
+    "MnO₄⁻ + Fe²⁺ + H⁺ → Mn²⁺ + Fe³⁺ + H₂O", "MnO4(-) + Fe(2+) + H(+) ⇌ Mn(2+) + Fe(3+) + H2O",
+    "MnO4−\u00a0+ Fe++ + H+ <=> Mn++ + Fe+++ + H2O", "MnO4-(aq)+Fe^2+(aq)+H+(aq)->Mn^2+(aq)+Fe^3+(aq)+H2O(l)",
+    "MnO4^- (aq) + Fe^2+ (aq) + H+ (aq) -> Mn^2+ (aq) + Fe^3+ (aq) + H2O (l)",
+]  # fmt: skip
+
+
+@pytest.mark.parametrize("written", SPELLINGS)
+def test_every_spelling_balances_through_the_worksheet_functions(written: str) -> None:
+    """The worksheet functions give the same coefficients and differences however the equation is spelt."""
+    done = thermofuncs.call("BALANCED", written)
+    assert isinstance(done, str)
+    coefficients = [n or 1 for _, n in ((t.species, t.coefficient) for t in terms_of(done))]
+    assert coefficients == [1, 5, 8, 1, 5, 4]
+    assert thermofuncs.call("IMBALANCE", done) == [["what", "left", "right", "missing"], ["balanced", "", "", ""]]
+    assert thermofuncs.call("IMBALANCE", written) == imbalance(SPELLINGS[0])
+
+
+def terms_of(equation: str) -> tuple[Term, ...]:
+    """The terms of an equation text, left to right."""
+    read = parse_equation(equation)
+    return (*read.reactants, *read.products)
 
 
 @given(HARD_TEXTS)

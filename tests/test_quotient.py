@@ -69,9 +69,9 @@ REFUSED_TABLES = [
     (CALCINATION, [["CO2(g)", "0,3 atm"]], DecimalComma, "with a comma in the number: write 0.3 atm", "#VALUE!"),
     (CALCINATION, [["CO2(g)", "1 barg"]], GaugePressure, "add the local atmospheric pressure", "#VALUE!"),
     (CALCINATION, [["CO2(g)", "2 mmol/L"]], QuantityOfAnotherPhase, '"2 mmol/L" is a concentration.', "#VALUE!"),
-    (CALCINATION, [["CaO(s)", "1 bar"]], QuantityOfAnotherPhase, "of CaO(s): \"1 bar\" is a pressure.", "#VALUE!"),
+    (CALCINATION, [["CaO(s)", "1 bar"]], QuantityOfAnotherPhase, 'of CaO(s): "1 bar" is a pressure.', "#VALUE!"),
     (COPPER, [["Cu^2+(aq)", "1 bar"]], QuantityOfAnotherPhase, "a solute (aq) a molality", "#VALUE!"),
-    (CALCINATION, [["CO2(g)"]], ActivityRow, "activities has 1 columns: two columns are needed", "#VALUE!"),
+    (CALCINATION, [["CO2(g)"]], ActivityRow, "activities has a single column: two columns are needed", "#VALUE!"),
     (CALCINATION, [["CO2(g)", 1.0, 2.0]], ActivityRow, "activities has 3 columns", "#VALUE!"),
     (CALCINATION, [[None, 0.5]], ActivityRow, "the value 0.5 beside a blank cell", "#VALUE!"),
     (CALCINATION, [["N2(g)", 1.0]], StrangeActivity, "has N2(g), which is not one of the reaction's", "#VALUE!"),
@@ -165,8 +165,8 @@ def test_a_bare_electron_has_no_data(electron: str) -> None:
 
 
 def test_the_quotient_is_the_product_of_powers_of_activities() -> None:
-    """ln Q is the sum of the stoichiometric numbers times the logarithms of the activities."""
-    table = [["CO(g)", 0.1], ["H2O(g)", "0.3 bar"], ["CO2(g)", "20 kPa"], ["H2(g)", 0.4]]
+    """The logarithm of Q is the sum of the stoichiometric numbers times the logarithms of the activities."""
+    table: list[list[object]] = [["CO(g)", 0.1], ["H2O(g)", "0.3 bar"], ["CO2(g)", "20 kPa"], ["H2(g)", 0.4]]
     assert ln_quotient(SHIFT, table) == pytest.approx(math.log(0.2 * 0.4 / (0.1 * 0.3)), rel=1e-14)
     assert thermofuncs.call("LNQ", SHIFT, table) == ln_quotient(SHIFT, table)
 

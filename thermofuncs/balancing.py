@@ -14,6 +14,7 @@ from thermofuncs.reactions import ELECTRON, Equation, Term, differences, missing
 from thermofuncs.substances.formulas import Formula, parse_species
 
 MOST_SPECIES = 60
+LARGEST = 10**15
 
 
 def formulas_of(equation: Equation, argument: str = "equation") -> dict[str, Formula]:
@@ -27,8 +28,9 @@ def balanced(text: str) -> str:
 
     Parameters
     ----------
-    text : str. Equation text. Without any number the smallest whole coefficients are found; where numbers
-        stand they stay, and every other coefficient, ``?`` or not written, is solved for.
+    text : str. Equation text. Without any number or ``?`` the smallest whole coefficients are found. Numbers
+        stay as given, and the others are solved for. Where ``?`` stands, those alone are solved for, and a
+        coefficient that is not written is 1; where every one is ``?`` the smallest whole ones are found.
 
     Returns
     -------
@@ -50,7 +52,7 @@ def balanced(text: str) -> str:
     terms = [(-1, t) for t in equation.reactants] + [(1, t) for t in equation.products]
     _each_once([t.species for _, t in terms], text)
     columns = [_column(sign, term, formulas) for sign, term in terms]
-    fixed = {i: t.coefficient for i, (_, t) in enumerate(terms) if t.coefficient is not None}
+    fixed = _fixed([t for _, t in terms])
     if len(fixed) == len(terms):
         found = differences(equation, formulas)
         if found:
@@ -64,9 +66,18 @@ def balanced(text: str) -> str:
     wrong = [terms[i][1].species for i, x in enumerate(solution) if x < 0]
     if wrong:
         raise WrongSide(what=text[:80], species=", ".join(wrong)[:80])
+    if any(max(x.numerator, x.denominator) >= LARGEST for x in solution):
+        raise CannotBalance(what=text[:80], why="a coefficient would have more than 15 digits")
     done = [Term(term.species, x) for (_, term), x in zip(terms, solution, strict=True)]
     n = len(equation.reactants)
     return str(Equation(tuple(done[:n]), tuple(done[n:])))
+
+
+def _fixed(terms: list[Term]) -> dict[int, Fraction]:
+    """The given coefficients by place: the numbers, and 1 for what is not written where ``?`` stands."""
+    asked = any(t.unknown for t in terms)
+    given = {i: Fraction(1) if t.coefficient is None else t.coefficient for i, t in enumerate(terms) if not t.unknown}
+    return given if asked else {i: x for i, x in given.items() if terms[i].coefficient is not None}
 
 
 def _each_once(species: list[str], text: str) -> None:
@@ -164,7 +175,8 @@ def _with_given(columns: list[Column], fixed: dict[int, Fraction], text: str) ->
     matrix = [[*row, given[e]] for e, row in zip(elements, _rows(unknown, elements), strict=True)]
     rows, pivots = _eliminated(matrix)
     if len(free) in pivots:
-        raise CannotBalance(what=text[:80], why=_first_failing(unknown, given))
+        remark = ", where what is not written beside ? is 1" if "?" in text else ""
+        raise CannotBalance(what=text[:80], why=_first_failing(unknown, given) + remark)
     if len(pivots) < len(free):
         raise SeveralReactions(what=text[:80], count=_independent(columns))
     solved = {i: rows[place][-1] for place, i in enumerate(free)}

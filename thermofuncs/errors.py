@@ -2,6 +2,7 @@
 
 ThermofuncsError
     NotUnderstood   #VALUE!  an argument that cannot be read or does not fit
+        WorkbookRefused      a workbook file that is not read, or not written, any further
     NotAvailable    #N/A     a substance or property that the data lacks
     NotValid        #NUM!    a state, range or fit outside what is valid
 

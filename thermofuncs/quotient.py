@@ -166,7 +166,7 @@ def _check_balance(equation: Equation, species: Mapping[str, _Written], record: 
     if not unknown:
         check_balance(equation, composed)
     elif record is not None:
-        record.caution(f"Whether the reaction balances is not checked: {', '.join(unknown)} is no formula.")
+        record.caution(f"Whether the reaction balances is not checked: {', '.join(unknown)[:120]} is no formula.")
 
 
 def _table(activities: Sequence[Sequence[object]], species: Mapping[str, _Written]) -> dict[str, object]:
@@ -174,17 +174,17 @@ def _table(activities: Sequence[Sequence[object]], species: Mapping[str, _Writte
     found: dict[str, object] = {}
     for row in activities:
         if len(row) != 2:
-            raise ActivityRow(given=f"{len(row)} columns")
+            raise ActivityRow(given="a single column" if len(row) == 1 else f"{len(row)} columns")
         name, value = row
         if name in (None, ""):
             if value in (None, ""):
                 continue
             raise ActivityRow(given=f"the value {str(value)[:60]} beside a blank cell")
         if not isinstance(name, str):
-            raise StrangeActivity(species=str(name)[:60], known=", ".join(species))
+            raise StrangeActivity(species=str(name)[:60], known=", ".join(species)[:120])
         matches = _matching(name, species)
         if len(matches) != 1 or matches[0] in found:
-            raise StrangeActivity(species=name[:60], known=", ".join(species))
+            raise StrangeActivity(species=name[:60], known=", ".join(species)[:120])
         found[matches[0]] = value
     return {name: value for name, value in found.items() if value not in (None, "")}
 

@@ -22,20 +22,23 @@ from thermofuncs.errors import (
     EmptySide,
     EquationTooLong,
     FormulaNotRead,
+    FormulaTooLong,
     NothingReacts,
     NotOneSeparator,
     ThermofuncsError,
     TwoReadings,
     Unbalanced,
 )
+from thermofuncs.substances.common_names import PLAIN_SIGNS
 from thermofuncs.substances.formulas import parse_species
 
 ELECTRON = "e-"
 LONGEST = 8192
+LONGEST_TERM = 400
 BALANCE_TOLERANCE = 1e-9
 
 _SEPARATOR = re.compile(r"<=>|<->|(?<= )-->|->|=>|[=→⇌⇄⟶]")
-_PLAIN = str.maketrans({"−": "-", "＋": "+", "＝": "=", **dict.fromkeys("\u200b\u200c\u200d\u2060\ufeff")})
+_PLAIN = PLAIN_SIGNS | str.maketrans({"＋": "+", "＝": "="})
 _VULGAR = {
     "½": "1/2", "⅓": "1/3", "⅔": "2/3", "¼": "1/4", "¾": "3/4", "⅕": "1/5", "⅖": "2/5", "⅗": "3/5", "⅘": "4/5",
     "⅙": "1/6", "⅚": "5/6", "⅛": "1/8", "⅜": "3/8", "⅝": "5/8", "⅞": "7/8",
@@ -49,7 +52,7 @@ _COEFFICIENT = re.compile(
 _COMMA = re.compile(r"[0-9]{1,15},[0-9]{1,15}(?=[\sA-Z(\[]|e-)")
 _NUMBERED_NAME = re.compile(r"[0-9]+(?:,[0-9]+)*-[A-Za-z]")
 _NUMBER = re.compile(r"\(?[0-9.+*·×/-]")
-_ELECTRONS = frozenset({"e-", "e–", "e⁻", "e^-", "e(-)"})
+_ELECTRONS = frozenset({"e-", "e⁻", "e^-", "e(-)"})
 _WATER = re.compile("[·*•⋅∙]")
 _ENDED = re.compile(r"(?: |[⁺⁻-]|\((?:g|l|s|cr|aq)\))\Z")
 # no sign, closing bracket, phase, or a charge number as in Fe+3
@@ -156,7 +159,7 @@ def parse_equation(text: str, argument: str = "reaction", *, unknowns: bool = Fa
     Raises
     ------
     NotOneSeparator, EmptySide, CoefficientNotRead, CoefficientNotGiven, DecimalComma, TwoReadings, NothingReacts,
-    EquationTooLong: the sentence says what stands where and what would do.
+    EquationTooLong, FormulaTooLong: the sentence says what stands where and what would do.
 
     Examples
     --------
@@ -255,6 +258,8 @@ def _term(text: str) -> Term:
 
 def _spelled(species: str) -> str:
     """One spelling of the electron, and of a phase behind a space."""
+    if len(species) > LONGEST_TERM:
+        raise _Stop(FormulaTooLong, given=species[:40], most=str(LONGEST_TERM))
     return ELECTRON if species in _ELECTRONS else _SPACED_PHASE.sub(r"(\1)", species)
 
 
@@ -304,7 +309,7 @@ def check_balance(
     """Raise Unbalanced where atoms or charge differ, saying by how much. Parameters as in differences."""
     found = differences(equation, composed)
     if found:
-        raise Unbalanced(argument=argument, what=str(equation), missing=missing_text(found))
+        raise Unbalanced(argument=argument, what=str(equation)[:80], missing=missing_text(found)[:160])
 
 
 def missing_text(found: Mapping[str, tuple[float, float]]) -> str:

@@ -33,29 +33,33 @@ INPUT, OURS, MET, NOT_MET = "#FFF3C9", "#E4F0EC", "#D8EDD6", "#F5CBC7"
 CAUTION, WRONG = "#FBE6D4", "#8C2F25"
 FIRST_COLOUR, SECOND_COLOUR = "#1F6F78", "#B5482F"
 
-_BASE = {"font_name": "Arial", "font_size": 10, "valign": "vcenter", "font_color": "#1A1A1A"}
-_CELL = {"border": 1, "border_color": RULE}
-_HEADER = {"bold": True, "font_color": "#FFFFFF", "bg_color": INK, "text_wrap": True, "align": "center"}
-_ENTRY = {"bg_color": INPUT, "font_color": "#12439B", "locked": False}
+_BASE: dict[str, Any] = {"font_name": "Arial", "font_size": 10, "valign": "vcenter", "font_color": "#1A1A1A"}
+_CELL: dict[str, Any] = {"border": 1, "border_color": RULE}
+_HEADER: dict[str, Any] = {"bold": True, "font_color": "#FFFFFF", "bg_color": INK, "text_wrap": True, "align": "center"}
+_ENTRY: dict[str, Any] = {"bg_color": INPUT, "font_color": "#12439B", "locked": False}
+_LEFT: dict[str, Any] = {"align": "left", "indent": 1, "text_wrap": True}
+_RIGHT: dict[str, Any] = {"align": "right", "indent": 1}
 STYLES: dict[str, dict[str, Any]] = {
     "plain": {},
     "title": {"bold": True, "font_size": 16, "font_color": INK},
-    "subtitle": {"font_size": 10, "italic": True, "font_color": "#4A5A66"},
+    "subtitle": {"text_wrap": True, "font_size": 10, "italic": True, "font_color": "#4A5A66"},
     "section": {"bold": True, "font_size": 11, "font_color": INK, "bottom": 2, "bottom_color": INK},
     "header": _CELL | _HEADER,
-    "header left": _CELL | _HEADER | {"align": "left"},
-    "label": _CELL | {"text_wrap": True},
-    "note": _CELL | {"text_wrap": True, "font_size": 9, "font_color": "#46545E"},
+    "header left": _CELL | _HEADER | {"align": "left", "indent": 1},
+    "label": _CELL | _LEFT,
+    "note": _CELL | _LEFT | {"font_size": 9, "font_color": "#46545E"},
     "unit": _CELL | {"align": "center", "text_wrap": True},
     "text": {"text_wrap": True, "valign": "top"},
-    "caution": {"text_wrap": True, "valign": "top", "bg_color": CAUTION, "border": 1, "border_color": "#C9854C"},
-    "input": _CELL | _ENTRY | {"align": "right"},
-    "input text": _CELL | _ENTRY | {"align": "left", "text_wrap": True},
-    "ours": _CELL | {"bg_color": OURS, "align": "right"},
-    "ours text": _CELL | {"bg_color": OURS, "text_wrap": True, "align": "left"},
-    "native": _CELL | {"align": "right"},
-    "native text": _CELL | {"align": "left", "text_wrap": True},
-    "wrong": _CELL | {"align": "right", "italic": True, "font_color": WRONG},
+    "line": {"text_wrap": True, "bottom": 1, "bottom_color": RULE},
+    "caution": _LEFT | {"bg_color": CAUTION, "border": 1, "border_color": "#C9854C"},
+    "input": _CELL | _ENTRY | _RIGHT,
+    "input text": _CELL | _ENTRY | _LEFT,
+    "ours": _CELL | _RIGHT | {"bg_color": OURS},
+    "ours text": _CELL | _LEFT | {"bg_color": OURS},
+    "native": _CELL | _RIGHT,
+    "native text": _CELL | _LEFT,
+    "wrong": _CELL | _RIGHT | {"italic": True, "font_color": WRONG},
+    "wrong text": _CELL | _LEFT | {"italic": True, "font_color": WRONG},
     "verdict": _CELL | {"align": "center", "bold": True},
 }
 
@@ -138,30 +142,38 @@ class Sheet:
     def formula(
         self, cell: str, formula: str, style: str = "", form: str = "General", given: Value | None = None
     ) -> None:
-        """Write a formula with its result: from the recalculation, or given where nothing of ours is behind it."""
+        """Write a formula with its result: the recalculation's, or given where nothing of ours is near it."""
         row, column = xl_cell_to_rowcol(cell)
         style = style or ("ours" if "TF." in formula else "native")
         self.inner.write_formula(row, column, formula, self.sample.style(style, form), self._value(row, column, given))
 
-    def array(self, cells: str, formula: str, style: str = "ours text", form: str = "General") -> None:
-        """Write an array formula over a sized range with all its results."""
+    def array(
+        self, cells: str, formula: str, styles: Mapping[int, tuple[str, str]] | None = None, *, headed: bool = True
+    ) -> None:
+        """Write an array formula over a sized range with all its results; styles and number formats by column."""
         first, last = cells.split(":")
         (top, left), (bottom, right) = xl_cell_to_rowcol(first), xl_cell_to_rowcol(last)
-        look = self.sample.style(style, form)
         self.inner.write_array_formula(
-            top, left, bottom, right, "{" + formula + "}", look, self._value(top, left, None)
-        )
+            top, left, bottom, right, "{" + formula + "}",
+            self._array_look(0, 0, styles or {}, headed=headed), self._value(top, left, None),
+        )  # fmt: skip
         for row in range(top, bottom + 1):
             for column in range(left, right + 1):
                 if (row, column) == (top, left):
                     continue
                 value = self._value(row, column, None)
+                look = self._array_look(row - top, column - left, styles or {}, headed=headed)
                 if isinstance(value, str):
                     self.inner.write_string(row, column, value, look)
                 else:
                     self.inner.write_number(row, column, value, look)
 
-    def expect(  # noqa: D417 - the arguments are the fields of the side file
+    def _array_look(self, row: int, column: int, styles: Mapping[int, tuple[str, str]], *, headed: bool) -> object:
+        if headed and row == 0:
+            return self.sample.style("header left")
+        return self.sample.style(*styles.get(column, ("ours text", "General")))
+
+    def expect(
         self, cell: str, expected: Value, tolerance: float, kind: str, source: str, unit: str = "1"
     ) -> None:
         """Enter a cell into the side file, with a value that the engine did not compute."""
@@ -169,12 +181,13 @@ class Sheet:
             {
                 "sheet": self.name, "cell": cell, "expected": expected, "tolerance": tolerance, "unit": unit,
                 "kind": kind, "source": source,
-            }  # fmt: skip
-        )
+            }
+        )  # fmt: skip
 
     def pin(self, cell: str, unit: str = "1") -> None:
         """Enter a cell into the side file with the value that the engine gives now: it guards against change."""
-        value = self._value(*xl_cell_to_rowcol(cell), None)
+        row, column = xl_cell_to_rowcol(cell)
+        value = self._value(row, column, None)
         digits = abs(value) * 1e-9 if isinstance(value, float) else 0.0
         self.expect(cell, value, digits, "pinned", "the engine itself: guards against change, proves nothing", unit)
 
@@ -182,7 +195,8 @@ class Sheet:
         found = self.sample.values.get((self.name, row, column), given)
         if found is None:
             if self.sample.values:
-                raise ValueError(f"no result for {self.name}!{xl_rowcol_to_cell(row, column)}")
+                message = f"no result for {self.name}!{xl_rowcol_to_cell(row, column)}"
+                raise ValueError(message)
             return 0.0
         return found
 
@@ -192,20 +206,24 @@ def make(path: Path, build: Callable[[Sample], None], title: str) -> None:
 
     Raises
     ------
-    ValueError. A cell could not be evaluated, or a given result is not what the evaluator finds.
+    ValueError. A cell could not be evaluated, or has no result.
     """
     with tempfile.TemporaryDirectory() as folder:
         draft = Path(folder) / path.name
         _write(draft, build, title, {})
         result = recalculate(draft, catalogue_functions())
-    if result.kept or result.differing:
-        raise ValueError(f"{path.name}: {result.kept} {result.differing}")
-    values: dict[tuple[str, int, int], Value] = {}
-    for place, value in result.values.items():
-        plain = value.value if isinstance(value, CellError) else value
-        if plain is not None:
-            values[place.sheet, place.row - 1, place.column - 1] = plain
-    expected = _write(path, build, title, values)
+        if result.kept:
+            message = f"{path.name}: {result.kept}"
+            raise ValueError(message)
+        found = result.values | {change.place: change.after for change in result.differing}
+        values: dict[tuple[str, int, int], Value] = {}
+        for place, value in found.items():
+            plain = value.value if isinstance(value, CellError) else value
+            if plain is not None:
+                values[place.sheet, place.row - 1, place.column - 1] = plain
+        expected = _write(draft, build, title, values)
+        # numbers of arrays come out of the library with 16 digits: the engine writes them with all bits
+        recalculate(draft, catalogue_functions()).save(path)
     side = {"workbook": path.name, "cells": expected}
     path.with_suffix(".expected.json").write_text(
         json.dumps(side, ensure_ascii=False, indent=1) + "\n", encoding="utf-8", newline="\n"

@@ -34,7 +34,10 @@ def test_every_name_resolves(name: str) -> None:
 
 @pytest.mark.parametrize(
     ("text", "normal"),
-    [("H2O( cr)", "H2O( cr)"), ("Fe (cr)", "Fe(s)"), (" Fe(L) ", "Fe(l)"), ("Cl−(aq)", "Cl-(aq)")],
+    [
+        ("H2O( cr)", "H2O(s)"), ("1‑butene\u200b ( g )", "1-butene(g)"), ("Fe (cr)", "Fe(s)"), (" Fe(L) ", "Fe(l)"),
+        ("Cl−(aq)", "Cl-(aq)"),
+    ],
 )
 def test_normal_text(text: str, normal: str) -> None:
     """A text is written with the house's phases, single spaces and plain minus signs."""

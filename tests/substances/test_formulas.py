@@ -1,4 +1,4 @@
-"""Chemical formulas and species."""
+"""Chemical formulas and species; the composition of nested groups against chemicals, a reference implementation."""
 
 from __future__ import annotations
 
@@ -6,6 +6,7 @@ import contextlib
 from fractions import Fraction
 
 import pytest
+from chemicals.elements import nested_formula_parser
 from hypothesis import given
 from hypothesis import strategies as st
 
@@ -72,6 +73,13 @@ READ = [
     ("NH4+(aq)", {"N": 1, "H": 4}, 1, "aq"),
     ("C60-", {"C": 60}, -1, None),
     ("NO3−(aq)", {"N": 1, "O": 3}, -1, "aq"),
+    ("SO4^2−", {"S": 1, "O": 4}, -2, None),
+    ("\u200bH2\u2060O\ufeff", {"H": 2, "O": 1}, 0, None),
+    ("HNO3", {"H": 1, "N": 1, "O": 3}, 0, None),
+    ("(NH4)2SO4", {"N": 2, "H": 8, "S": 1, "O": 4}, 0, None),
+    ("Fe(CN)6^4-(aq)", {"Fe": 1, "C": 6, "N": 6}, -4, "aq"),
+    ("CuSO4•5H2O", {"Cu": 1, "S": 1, "O": 9, "H": 10}, 0, None),
+    ("BaCO3(c)", {"Ba": 1, "C": 1, "O": 3}, 0, "c"),
     ("e-", {}, -1, None),
     ("e-(g)", {}, -1, "g"),
     ("e⁻", {}, -1, None),
@@ -117,6 +125,16 @@ REFUSED = [
     ("Ca(no3)", "(no3) is no group of atoms and no phase"),
     ("K(scn)", "did you mean K(SCN)"),
     ("H2O(1)", "did you mean H2O(l)"),
+    ("H2O( )", "a pair of brackets is empty"),
+    ("CO2(gas)", "did you mean CO2(g)"),
+    ("CO2(G)", "did you mean CO2(g)"),
+    ("CO2(g, 298 K)", "did you mean CO2(g)"),
+    ("H2O(liquid)", "did you mean H2O(l)"),
+    ("Fe(Solid)", "did you mean Fe(s)"),
+    ("NaCl(aq,1m)", "did you mean NaCl(aq)"),
+    ("NaCl(aqueous)", "did you mean NaCl(aq)"),
+    ("C2H2,acetylene", "has a comma and a name behind the formula"),
+    ("H0.123456789012345", "has more than 15 digits"),
     ("H02", "the count 02 begins with a zero: is the letter O meant?"),
     ("H0", "the count 0 begins with a zero"),
     ("Fe0,947O", "decimals are written with a point"),
@@ -244,6 +262,32 @@ def test_a_group_counts_as_often_as_it_says(atoms: list[tuple[str, str]], times:
     body = "".join(f"{symbol}{n}" for symbol, n in atoms)
     once, often = parse_formula(body).exact, parse_formula(f"[{body}]{times}").exact
     assert often == {symbol: n * times for symbol, n in once.items()}
+
+
+ATOMS = st.tuples(st.sampled_from(sorted(COMMON - {"I", "V"})), st.integers(1, 30)).map(
+    lambda atom: f"{atom[0]}{atom[1] if atom[1] > 1 else ''}"
+)
+NESTED = st.recursive(
+    st.lists(ATOMS, min_size=1, max_size=4).map("".join),
+    lambda inner: st.tuples(inner, inner, st.integers(2, 12)).map(lambda x: f"{x[0]}({x[1]}){x[2]}"),
+    max_leaves=6,
+)
+
+
+@given(NESTED)
+def test_nested_groups_count_as_a_reference_implementation_counts_them(text: str) -> None:
+    """The atoms of groups within groups are those that a reference implementation counts."""
+    assert dict(parse_formula(text).exact) == nested_formula_parser(text)
+
+
+@given(st.lists(NESTED, min_size=2, max_size=4), st.integers(2, 12), st.sampled_from("·*•"))
+def test_parts_behind_a_dot_add_up(parts: list[str], times: int, dot: str) -> None:
+    """What stands behind a dot is added, multiplied by the number before it."""
+    total: dict[str, int] = {}
+    for place, part in enumerate(parts):
+        for symbol, n in nested_formula_parser(part).items():
+            total[symbol] = total.get(symbol, 0) + n * (times if place else 1)
+    assert dict(parse_formula(f"{dot}{times}".join(parts)).exact) == total
 
 
 @given(st.lists(st.sampled_from(sorted(COMMON)), min_size=1, max_size=6))

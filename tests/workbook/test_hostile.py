@@ -288,6 +288,39 @@ def test_array_over_the_whole_sheet(maker: Maker) -> None:
     assert [item.reason for item in result.kept] == ["its array covers S!A1:XFD1048576"]
 
 
+def test_formulas_that_stop_the_evaluator(maker: Maker) -> None:
+    """A formula because of which the evaluator gives up on the whole book is found and kept alone."""
+    cells = {f"A{n}": f"=TF.HALF({n})" for n in range(1, 60)}
+    path = maker.cells(**cells, B1="=TF.HALF(1)<B2:C1#", B7="=OFFSET(B8,0,0)+B9", B8="=OFFSET(B7,0,0)", B9="=B1")
+    result = maker.recalculate(path)
+    assert len([value for value in result.values.values() if isinstance(value, float)]) >= 59
+    assert "S!B1" in {str(item.place) for item in result.kept}
+
+
+@pytest.mark.parametrize(
+    ("settings", "sentence"),
+    [('iterateCount="x"', "its settings for iterative calculation are no numbers"), ('iterateDelta="y"', "settings")],
+)
+def test_damaged_settings(maker: Maker, settings: str, sentence: str) -> None:
+    """Settings that are no numbers are named."""
+    path = maker.package({"S": CALL}, workbook=f'<calcPr iterate="1" {settings}/>')
+    refused(maker, path, DamagedWorkbook, sentence)
+
+
+@pytest.mark.parametrize("settings", ['iterateCount="-5"', 'iterateDelta="nan"', 'iterateCount="999999999"'])
+def test_odd_settings(maker: Maker, settings: str) -> None:
+    """Settings outside what makes sense are bounded."""
+    path = maker.package({"S": CALL}, workbook=f'<calcPr iterate="1" {settings}/>')
+    assert list(maker.recalculate(path).values.values()) == [2.0]
+
+
+@pytest.mark.parametrize("names", [("S", "s"), ("",)])
+def test_sheet_names(maker: Maker, names: tuple[str, ...]) -> None:
+    """A sheet without a name, or two of one name, are refused."""
+    path = maker.package(dict.fromkeys(names, CALL))
+    refused(maker, path, DamagedWorkbook, "which is no name or there twice")
+
+
 def test_endless_evaluation(maker: Maker) -> None:
     """An evaluation that takes longer than allowed is stopped and refused."""
 

@@ -148,8 +148,9 @@ def run(function: Function, arguments: Sequence[object], record: Record | None) 
     if len(arguments) > len(declared) and not (declared and declared[-1].variadic):
         raise TooManyArguments(function=function.signature, given=len(arguments), most=len(declared))
     options = options_of(function, arguments) if function.options else PLAIN
+    table = function.result_shape == "table"  # it is of one thing, and reads no range as many
     for argument, value in zip(declared, arguments, strict=False):
-        if type(value) is not float and _is_range(value) and argument.kind in BROADCAST:
+        if type(value) is not float and argument.kind in BROADCAST and _is_range(value) and not table:
             return _over_range(function, arguments, options)
     values, unit = _read(function, arguments, options)
     result = function.compute(*values, record=record)
@@ -257,7 +258,9 @@ def _rows(value: object) -> list[list[object]]:
 
 
 def _spread(function: Function, arguments: Sequence[object]) -> list[int]:
-    """The places of the arguments that are spread over the answer."""
+    """The places of the arguments that are spread over the answer; a table is of one thing."""
+    if function.result_shape == "table":
+        return []
     pairs = enumerate(zip(function.arguments, arguments, strict=False))
     return [i for i, (a, value) in pairs if a.kind in BROADCAST and _is_range(value)]
 

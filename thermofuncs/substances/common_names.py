@@ -13,15 +13,16 @@ from pathlib import Path
 
 TABLE = Path(__file__).with_name("common_names.csv")
 PHASES = {"s": "s", "cr": "s", "l": "l", "L": "l", "g": "g", "aq": "aq"}
+PLAIN_SIGNS = str.maketrans({**dict.fromkeys("−–‑", "-"), **dict.fromkeys("\u200b\u200c\u200d\u2060\ufeff")})
 TAGGED = re.compile(r"(.+?) ?\(([^()]+)\)")
 
 
 def normal_text(text: str) -> str:
     """A text of a substance with single spaces, plain minus signs and the house's phase signs."""
-    text = " ".join(text.replace("−", "-").replace("–", "-").split())
+    text = " ".join(text.translate(PLAIN_SIGNS).split())
     tagged = TAGGED.fullmatch(text)
-    if tagged and tagged[2] in PHASES:
-        return f"{tagged[1]}({PHASES[tagged[2]]})"
+    if tagged and (tag := tagged[2].strip()) in PHASES:
+        return f"{tagged[1]}({PHASES[tag]})"
     return text
 
 

@@ -26,7 +26,7 @@ PHASES = frozenset({"g", "l", "s", "cr", "aq"})
 SHORT_FORMS = frozenset({"gr", "am", "an", "gl", "hcp", "fcc", "bcc"})
 MOST_DIGITS = 15
 PHASE_WORDS = {
-    "gas": "g", "vapour": "g", "vapor": "g", "liq": "l", "liquid": "l", "sol": "s", "solid": "s", "c": "s",
+    "gas": "g", "vapour": "g", "vapor": "g", "liq": "l", "liquid": "l", "sol": "s", "solid": "s",
     "cryst": "s", "crystal": "s", "crystalline": "s", "aqueous": "aq", "1": "l",
 }  # fmt: skip
 PLAIN_SIGNS = str.maketrans({
@@ -283,7 +283,7 @@ def _factor(number: str, text: str) -> Fraction:
 
 
 def _count(number: str, text: str) -> Fraction:
-    if len(number) > MOST_DIGITS:
+    if len(number.replace(".", "")) > MOST_DIGITS:
         raise _unread(text, f"{number[:20]} has more than {MOST_DIGITS} digits")
     n = Fraction(number)
     if number[0] == "0" and number[1:2] != ".":

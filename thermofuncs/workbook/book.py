@@ -142,7 +142,7 @@ def read_book(path: Path, limits: Limits = DEFAULT_LIMITS) -> Book:
             book.iteration = dict(element.attrib)
         elif name == "workbookPr":
             book.date_1904 = element.get("date1904", "0") in {"1", "true"}
-    _read_names_and_sheets(book, root, part)
+    _read_sheets(book, root, part)
     if any(name.startswith("_xmlsignatures/") for name in package.entries):
         book.notes.append("The file has a digital signature, which does not fit its recalculated copy.")
     return book
@@ -173,33 +173,42 @@ def _workbook_part(package: Package) -> str:
     raise NotAWorkbook(path=package.path.name, text="the archive holds no workbook")
 
 
-def _read_names_and_sheets(book: Book, root: Element, part: str) -> None:
+def _read_sheets(book: Book, root: Element, part: str) -> None:
+    """The worksheets with their cells, and the names, each in its sheet or in the whole workbook."""
     relations = _relations(book.package, part)
     strings = _shared_strings(book.package, relations)
     order: list[str] = []
     for element in root.iter():
-        if local_name(element.tag) != "sheet":
-            continue
-        name = element.get("name", "")
-        order.append(name)
-        identity = next((value for key, value in element.attrib.items() if key.endswith("}id")), "")
-        kind, target, outside = relations.get(identity, ("", "", False))
-        if outside or (kind == "worksheet" and target not in book.package):
-            text = f"the sheet {name!r} has no part in the file"
-            raise DamagedWorkbook(path=book.package.path.name, text=text)
-        if kind == "worksheet":
-            book.sheets[name] = Sheet(name, target)
+        if local_name(element.tag) == "sheet":
+            _read_sheet(book, element, relations, order)
     for element in root.iter():
         if local_name(element.tag) == "definedName" and element.text:
-            index = element.get("localSheetId")
-            local = index is not None and index.isdecimal() and int(index) < len(order)
-            scope = order[int(index)] if local and index is not None else ""
+            index = element.get("localSheetId", "")
+            local = index.isdecimal() and int(index) < len(order)
+            scope = order[int(index)] if local else ""
             book.names[scope, element.get("name", "").casefold()] = element.text
     for sheet in book.sheets.values():
         _SheetLoader(book, sheet, strings).load()
         for kind, target, outside in _relations(book.package, sheet.part).values():
             if kind == "table" and not outside and target in book.package:
                 _read_table(book, sheet, target)
+
+
+def _read_sheet(
+    book: Book, element: Element, relations: dict[str, tuple[str, str, bool]], order: list[str]
+) -> None:
+    name = element.get("name", "")
+    if not name or name.casefold() in {known.casefold() for known in order}:
+        text = f"a sheet is named {name!r}, which is no name or there twice"
+        raise DamagedWorkbook(path=book.package.path.name, text=text)
+    order.append(name)
+    identity = next((value for key, value in element.attrib.items() if key.endswith("}id")), "")
+    kind, target, outside = relations.get(identity, ("", "", False))
+    if outside or (kind == "worksheet" and target not in book.package):
+        text = f"the sheet {name!r} has no part in the file"
+        raise DamagedWorkbook(path=book.package.path.name, text=text)
+    if kind == "worksheet":
+        book.sheets[name] = Sheet(name, target)
 
 
 def _shared_strings(package: Package, relations: dict[str, tuple[str, str, bool]]) -> list[str]:

@@ -11,8 +11,8 @@ from thermofuncs.workbook.addresses import Area, Place, parse_reference
 from thermofuncs.workbook.book import Book, Stored
 from thermofuncs.workbook.evaluation import Answer, Explained, Functions
 from thermofuncs.workbook.package import DEFAULT_LIMITS, Limits
+from thermofuncs.workbook.prepared import Prepared, Site
 from thermofuncs.workbook.recalculation import Recalculation, recalculate, same_bits
-from thermofuncs.workbook.rewriting import Prepared, Site
 
 
 @dataclass(frozen=True, slots=True)

@@ -8,7 +8,7 @@ from collections.abc import Collection, Iterable, Mapping
 import numpy as np
 
 from thermofuncs.workbook.addresses import Area, Place
-from thermofuncs.workbook.rewriting import Prepared
+from thermofuncs.workbook.prepared import Prepared
 
 
 class Dependencies:

@@ -18,7 +18,8 @@ from thermofuncs.workbook import natives
 from thermofuncs.workbook.addresses import Place, column_letters, parse_area
 from thermofuncs.workbook.book import Book, Stored
 from thermofuncs.workbook.markup import encoded
-from thermofuncs.workbook.rewriting import FIT, MAP, SITE, Prepared, Site
+from thermofuncs.workbook.prepared import Prepared, Site
+from thermofuncs.workbook.rewriting import FIT, MAP, SITE
 from thermofuncs.working import Step
 
 WORKSHEET_VALUES = {
@@ -86,6 +87,10 @@ class Answer:
     result: object
 
 
+class EvaluationStopped(Exception):
+    """The evaluator gave up as a whole, for the reason in its message."""
+
+
 class Evaluation:
     """Evaluates formulas; everything else in the workbook has its stored value.
 
@@ -117,9 +122,13 @@ class Evaluation:
         if book.date_1904:
             config.date_system = "1904"
         self._set_iteration(config)
-        self._workbook = formualizer.Workbook.from_bytes(
-            self._package(), config=formualizer.WorkbookConfig(eval_config=config)
-        )
+        try:
+            self._workbook = formualizer.Workbook.from_bytes(
+                self._package(), config=formualizer.WorkbookConfig(eval_config=config)
+            )
+        except OSError as error:
+            text = f"the evaluator cannot load it ({error})"
+            raise DamagedWorkbook(path=book.package.path.name, text=text) from error
         self._workbook.set_temporal_egress("serial")
         self._workbook.register_function(SITE, self._answer, min_args=1)
         self._workbook.register_function(FIT, _fit, min_args=3, max_args=3)
@@ -131,8 +140,14 @@ class Evaluation:
         settings = self.book.iteration
         if settings.get("iterate", "0") in {"1", "true"}:
             config.cycle_policy = "iterate"
-            config.iterate_max_iterations = min(int(settings.get("iterateCount", "100")), 10_000)
-            config.iterate_max_change = float(settings.get("iterateDelta", "0.001"))
+            try:
+                count = int(settings.get("iterateCount", "100"))
+                delta = float(settings.get("iterateDelta", "0.001"))
+            except ValueError as error:
+                text = "its settings for iterative calculation are no numbers"
+                raise DamagedWorkbook(path=self.book.package.path.name, text=text) from error
+            config.iterate_max_iterations = min(max(count, 1), 10_000)
+            config.iterate_max_change = delta if 0 <= delta < math.inf else 0.001
 
     def run(self) -> None:
         """Evaluate.
@@ -140,7 +155,7 @@ class Evaluation:
         Raises
         ------
         WorkbookTooLarge. The evaluation takes longer than the limit.
-        DamagedWorkbook. The evaluator gives up on the workbook as a whole.
+        EvaluationStopped. The evaluator gives up on all of these formulas because of some of them.
         """
         name, limits = self.book.package.path.name, self.book.package.limits
         self._deadline = time.monotonic() + limits.seconds
@@ -150,7 +165,7 @@ class Evaluation:
             if time.monotonic() > self._deadline:
                 text = "formulas that take longer to evaluate"
                 raise WorkbookTooLarge(path=name, text=text, limit=f"{limits.seconds} s") from error
-            raise DamagedWorkbook(path=name, text=f"it cannot be evaluated ({error})") from error
+            raise EvaluationStopped(str(error)) from error
 
     def raw(self, place: Place) -> Any:  # noqa: ANN401 - any worksheet value
         """The evaluator's own value of a cell."""

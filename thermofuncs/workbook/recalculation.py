@@ -3,18 +3,25 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Callable, Mapping
+from collections.abc import Callable, Collection, Mapping
 from dataclasses import dataclass, field
 from pathlib import Path
 
-from thermofuncs.errors import CellError, OutputRefused
+from thermofuncs.errors import CellError, DamagedWorkbook, OutputRefused
 from thermofuncs.workbook.addresses import Place
 from thermofuncs.workbook.book import Book, Stored, read_book
 from thermofuncs.workbook.dependents import Dependencies
-from thermofuncs.workbook.evaluation import Answer, Evaluation, Functions, missing_functions
+from thermofuncs.workbook.evaluation import (
+    Answer,
+    Evaluation,
+    EvaluationStopped,
+    Functions,
+    missing_functions,
+)
 from thermofuncs.workbook.package import DEFAULT_LIMITS, Limits, check_target, free_name
 from thermofuncs.workbook.patching import patched_sheet
-from thermofuncs.workbook.rewriting import Prepared, Rewriter, Site
+from thermofuncs.workbook.prepared import Prepared, Site
+from thermofuncs.workbook.rewriting import Rewriter
 
 _ROUNDS = 6
 _SAME = 1e-9
@@ -214,12 +221,11 @@ class _Work:
             if any(self.formulas[place].dynamic for place in needed):
                 needed = set(self.formulas)
             needed -= set(self.kept) | set(self.native_fallback)
-            calls = sum(len(self.formulas[place].sites) for place in needed)
-            evaluation = Evaluation(
-                self.book, {place: self.formulas[place] for place in needed}, self.sites, self.functions,
-                lambda done, calls=calls: self.report("evaluating", done, calls),  # type: ignore[misc]
-            )
-            evaluation.run()
+            try:
+                evaluation = self._run(needed)
+            except EvaluationStopped as stop:
+                self._set_aside(needed, str(stop))
+                continue
             self.evaluation = evaluation
             self.evaluated = needed
             fallen = self._fallen(needed)
@@ -227,7 +233,41 @@ class _Work:
             self._keep_failed(wanted)
             if not fallen:
                 return
-        self.result.notes.append("Some cells that ours depend on could not be settled; see the cells kept.")
+        text = "what its cells come to does not settle"
+        raise DamagedWorkbook(path=self.book.package.path.name, text=text)
+
+    def _run(self, places: Collection[Place]) -> Evaluation:
+        calls = sum(len(self.formulas[place].sites) for place in places)
+        evaluation = Evaluation(
+            self.book, {place: self.formulas[place] for place in places}, self.sites, self.functions,
+            lambda done: self.report("evaluating", done, calls),
+        )
+        evaluation.run()
+        return evaluation
+
+    def _set_aside(self, needed: Collection[Place], reason: str) -> None:
+        """Keep the formulas because of which the evaluator gives up on all of them."""
+        culprits = self._culprits(sorted(needed))
+        if not culprits:
+            text = f"it cannot be evaluated ({reason})"
+            raise DamagedWorkbook(path=self.book.package.path.name, text=text)
+        why = f"the evaluator gives up on it ({reason})"
+        self._keep({place: why for place in culprits if place in self.targets})
+        self.native_fallback.update({place: why for place in culprits if place not in self.targets})
+        self._keep_dependents([place for place in culprits if self.formulas[place].stored.value is None])
+
+    def _culprits(self, places: list[Place]) -> list[Place]:
+        """Those of some formulas that cannot be evaluated with stored values around them."""
+        try:
+            self._run(places)
+        except EvaluationStopped:
+            if len(places) == 1:
+                return places
+        else:
+            return []
+        half = len(places) // 2
+        found = self._culprits(places[:half]) + self._culprits(places[half:])
+        return found or [place for place in places if self.formulas[place].dynamic]
 
     def _fallen(self, needed: set[Place]) -> dict[Place, str]:
         fallen = {}

@@ -8,7 +8,7 @@ from __future__ import annotations
 
 import re
 from collections.abc import Collection, Sequence
-from dataclasses import dataclass, field
+from dataclasses import dataclass
 
 import formualizer
 
@@ -26,7 +26,8 @@ from thermofuncs.workbook.formula_tree import (
     formula_tree,
     significant,
 )
-from thermofuncs.workbook.spelling import called_name, near_names, seems_ours
+from thermofuncs.workbook.prepared import Prepared, Site, as_written
+from thermofuncs.workbook.spelling import called_name, near_names
 from thermofuncs.workbook.tables import structured_area
 
 SITE, FIT, MAP = "TFSITE", "TFFIT", "TFMAP"
@@ -34,80 +35,6 @@ _LIBRARY_PREFIX = re.compile(r"^(?:_xlfn\.|_xlws\.|_xludf\.)+", re.IGNORECASE)
 _EXTERNAL = re.compile(r"^'?[^'!]*\[[^\]]*\][^'!]*'?!|^\[[0-9]+\]")
 _LARGEST_FILL = 2_000_000
 _DEEPEST_NAME = 16
-
-
-@dataclass(frozen=True, slots=True)
-class Site:
-    """One call of one of our functions in one cell.
-
-    Parameters
-    ----------
-    number : int. Its number, under which the evaluator calls back.
-    place : Place. The cell.
-    name : str. The function, such as ``LNK``.
-    spelled : str. As the formula spells it.
-    omitted : frozenset of int. Which arguments are left out, from 0.
-    texts : tuple of str. The arguments as the formula writes them.
-    fit : tuple or None. Rows and columns that the result is spread over, where it is the whole formula.
-    computed : frozenset of int. Which arguments are a single formula cell, which is never blank.
-    """
-
-    number: int
-    place: Place
-    name: str
-    spelled: str
-    omitted: frozenset[int]
-    texts: tuple[str, ...]
-    fit: tuple[int, int] | None = None
-    computed: frozenset[int] = frozenset()
-
-
-@dataclass(slots=True)
-class Prepared:
-    """A formula ready for the evaluator.
-
-    Parameters
-    ----------
-    place : Place. The cell.
-    stored : StoredFormula. As it stands in the file.
-    text : str. For the evaluator, with the equals sign.
-    sites : list of Site. Our calls, also those behind a defined name.
-    areas : list of Area. What it refers to.
-    functions : set of str. The spreadsheet's own functions in it.
-    reasons : list of str. Why it cannot be evaluated; empty where it can.
-    """
-
-    place: Place
-    stored: StoredFormula
-    text: str = ""
-    sites: list[Site] = field(default_factory=list)
-    areas: list[Area] = field(default_factory=list)
-    functions: set[str] = field(default_factory=set)
-    reasons: list[str] = field(default_factory=list)
-
-    @property
-    def ours(self) -> bool:
-        """Whether it calls one of our functions; of an unreadable formula, whether it seems to."""
-        return bool(self.sites) or (bool(self.reasons) and seems_ours(self.stored.text))
-
-    @property
-    def written(self) -> str:
-        """The formula as this cell shows it, a shared one moved to its place."""
-        rows = self.place.row - self.stored.origin.row
-        columns = self.place.column - self.stored.origin.column
-        if not (rows or columns):
-            return "=" + self.stored.text
-        return "=" + _as_written(formula_tree(self.stored.text), rows, columns)
-
-    @property
-    def volatile(self) -> bool:
-        """Whether a spreadsheet computes it anew each time."""
-        return bool(self.functions & natives.VOLATILE)
-
-    @property
-    def dynamic(self) -> bool:
-        """Whether it refers to cells that are known only when it is evaluated."""
-        return bool(self.functions & natives.DYNAMIC) or ":" in self.functions
 
 
 @dataclass(frozen=True, slots=True)
@@ -384,7 +311,7 @@ class Rewriter:
         computed: set[int] = set()
         texts, written, array = [str(number)], [], name in self.tables
         for position, argument in enumerate(call.arguments):
-            written.append(_as_written(argument, context.rows, context.columns).strip())
+            written.append(as_written(argument, context.rows, context.columns).strip())
             if not significant(argument):
                 omitted.add(position)
                 texts.append("0")
@@ -416,19 +343,3 @@ def _is_text(item: Node | None, text: str) -> bool:
 
 def _calls_ours(item: Node | None) -> bool:
     return isinstance(item, Call) and called_name(item.spelled) is not None
-
-
-def _as_written(items: Sequence[Node], rows: int = 0, columns: int = 0) -> str:
-    """The text of items as the formula has it, in a copy so many rows and columns away."""
-    pieces = []
-    for item in items:
-        if isinstance(item, Group):
-            pieces.append(f"({_as_written(item.items, rows, columns)})")
-        elif isinstance(item, Call):
-            arguments = ",".join(_as_written(argument, rows, columns) for argument in item.arguments)
-            pieces.append(f"{item.spelled}({arguments})")
-        elif isinstance(item, Operand) and (reference := parse_reference(item.text)) is not None:
-            pieces.append(str(reference.moved(rows, columns)) if rows or columns else item.text)
-        else:
-            pieces.append(item.text)
-    return "".join(pieces)
