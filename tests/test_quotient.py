@@ -282,3 +282,14 @@ def test_any_table_gives_a_number_or_a_sentence(table: list[list[object]]) -> No
         assert math.isfinite(ln_quotient(SHIFT, table))
     except ThermofuncsError as error:
         assert error.sentence
+
+
+AMMONIA = ("N2(g) + 3 H2(g) = 2 NH3(g)", 700.0, [["N2(g)", "20 bar"], ["H2(g)", "60 bar"], ["NH3(g)", "5 bar"]])
+STEAM = ("H2(g) + 1/2 O2(g) = H2O(g)", 700.0, 2.0, [["H2(g)", "2 bar"], ["O2(g)", "0.2 bar"], ["H2O(g)", "0.5 bar"]])
+
+
+@pytest.mark.parametrize(("name", "arguments"), [("AFFINITY", (*AMMONIA, None)), ("EMF", STEAM)])
+def test_the_standard_pressure_cancels(name: str, arguments: tuple[object, ...]) -> None:
+    """An affinity and a cell voltage do not depend on which standard pressure K and Q share."""
+    bar = thermofuncs.call(name, *arguments)
+    assert thermofuncs.call(name, *arguments, None, "atm") == pytest.approx(bar, rel=1e-12)

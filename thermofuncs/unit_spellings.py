@@ -211,6 +211,9 @@ def plain(text: str) -> str:
     return _HYPHENATED.sub(r"\1mol", text)
 
 
+LONGEST = 120  # characters of a unit's spelling
+
+
 @lru_cache(maxsize=1024)
 def read_unit(text: str, argument: str = "unit") -> Unit:
     """The unit that a spelling means.
@@ -227,6 +230,9 @@ def read_unit(text: str, argument: str = "unit") -> Unit:
     GaugePressure
         The unit counts from the atmosphere.
     """
+    if len(text) > LONGEST:
+        near = f"A unit has at most {LONGEST} characters."
+        raise UnknownUnit(argument=argument, given=text[:40] + "…", near=near)
     spelling = plain(text)
     if _GAUGE.fullmatch(spelling):
         raise GaugePressure(argument=argument, given=text)

@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 from typing import Any, NamedTuple
 
-from workbooks.sheets import FIRST_COLOUR, INK, MET, NOT_MET, SECOND_COLOUR, Sample, Sheet
+from workbooks.sheets import FIRST_COLOUR, INK, MET, NOT_MET, Sample, Sheet
 
 OWN = "Relation between cells of this workbook: rounding alone may differ"
 SPELLING = (
@@ -49,12 +49,13 @@ class Check(NamedTuple):
 
 
 class Curve(NamedTuple):
-    """One line of a chart: its name, its ranges, and whether it is the wrong way."""
+    """One line of a chart: its name, its ranges, its colour, and whether it is broken."""
 
     name: str
     x: str
     y: str
-    wrong: bool = False
+    colour: str = FIRST_COLOUR
+    broken: bool = False
 
 
 def title_block(sheet: Sheet, title: str, plant: str, document: str, purpose: str) -> None:
@@ -66,7 +67,7 @@ def title_block(sheet: Sheet, title: str, plant: str, document: str, purpose: st
     sheet.text("F4", "Checked (name, date):", "line")
     sheet.merged("B5:F5", "Status: for checking. Not to be used until both lines above are signed.", "subtitle", 18)
     section(sheet, 7, "Purpose, method and limits")
-    sheet.merged("B8:F8", purpose, "text", 58)
+    sheet.merged("B8:F8", purpose, "text", 46)
     sheet.text("B9", "Input, may be changed", "input text")
     sheet.text("C9", "TF function", "ours text")
     sheet.merged("D9:E9", "Spreadsheet arithmetic", "native text", 18)
@@ -187,12 +188,11 @@ def curves(sample: Sample, title: str, lines: Sequence[Curve], *, marked: bool =
     """A chart of lines over a measured axis; the library ships no types."""
     chart = sample.book.add_chart({"type": "scatter", "subtype": "straight_with_markers" if marked else "straight"})
     for line in lines:
-        colour = SECOND_COLOUR if line.wrong else FIRST_COLOUR
-        look: dict[str, Any] = {"color": colour, "width": 1.75, "dash_type": "dash" if line.wrong else "solid"}
+        look: dict[str, Any] = {"color": line.colour, "width": 1.75, "dash_type": "dash" if line.broken else "solid"}
         entry: dict[str, Any] = {"name": line.name, "categories": line.x, "values": line.y, "line": look}
         if marked:
             entry["marker"] = {
-                "type": "circle", "size": 5, "border": {"color": colour}, "fill": {"color": colour},
+                "type": "circle", "size": 5, "border": {"color": line.colour}, "fill": {"color": line.colour},
             }  # fmt: skip
         chart.add_series(entry)
     chart.set_title({"name": title, "name_font": {"name": "Arial", "size": 12, "color": INK}, "overlay": False})

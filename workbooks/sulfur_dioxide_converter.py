@@ -19,7 +19,7 @@ from workbooks.layout import (
     title_block,
     working_table,
 )
-from workbooks.sheets import INK, Sample, Sheet
+from workbooks.sheets import INK, SECOND_COLOUR, Sample, Sheet
 
 TITLE = "Sulfur dioxide converter: how far bed 1 is from equilibrium"
 PURPOSE = (
@@ -230,7 +230,10 @@ def _k_of_t(sample: Sample) -> None:
         ("J", "ln K against 1000 K / T", f"H{last + 3}", 562, axis("1000 K / T", 1.0, 1.7, 0.1, "0.0")),
     ):
         x, y = f"='K of T'!${column}${first}:${column}${last}", f"='K of T'!$%s${first}:$%s${last}"
-        lines = [Curve("ln K", x, y % ("H", "H")), Curve("wrong: ΔrG°(298 K) held", x, y % ("L", "L"), wrong=True)]
+        lines = [
+            Curve("ln K", x, y % ("H", "H")),
+            Curve("wrong: ΔrG°(298 K) held", x, y % ("L", "L"), colour=SECOND_COLOUR, broken=True),
+        ]
         chart = curves(sample, title, lines)
         chart.set_x_axis(x_axis)
         chart.set_y_axis(axis("ln K", 0, 16, 2))
@@ -287,7 +290,7 @@ def _bed(sample: Sample) -> None:
 def _bed_chart(sample: Sample, sheet: Sheet) -> None:
     lines = [
         Curve("equilibrium", "='Bed 1'!$I$6:$I$15", "='Bed 1'!$B$6:$B$15"),
-        Curve("adiabatic line", "='Bed 1'!$B$20:$B$29", "='Bed 1'!$I$20:$I$29", wrong=True),
+        Curve("adiabatic line", "='Bed 1'!$B$20:$B$29", "='Bed 1'!$I$20:$I$29", colour=SECOND_COLOUR, broken=True),
     ]
     chart = curves(sample, "Conversion against temperature in bed 1", lines, marked=False)
     point = {"type": "diamond", "size": 11, "border": {"color": INK}, "fill": {"color": "#F2B632"}}

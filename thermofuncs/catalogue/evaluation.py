@@ -153,6 +153,13 @@ def run(function: Function, arguments: Sequence[object], record: Record | None) 
         if type(value) is not float and argument.kind in BROADCAST and _is_range(value) and not table:
             return _over_range(function, arguments, options)
     values, unit = _read(function, arguments, options)
+    return _computed(function, values, unit, record)
+
+
+def _computed(
+    function: Function, values: Sequence[object], unit: str | None, record: Record | None
+) -> object:
+    """The answer to arguments that were read, in its unit."""
     result = function.compute(*values, record=record)
     if unit is not None and unit != function.result_unit:
         result = _in_unit(cast("float", result), function.result_unit, unit, record)
@@ -415,11 +422,16 @@ def convert_array(flat: Any, scale: str) -> Any:  # noqa: ANN401  as above
 def _vector(
     function: Function, values: list[object], unit: str | None, place: int, kelvins: Any  # noqa: ANN401
 ) -> Any:  # noqa: ANN401  as above
+    import numpy as np  # noqa: PLC0415  a single cell does not pay for the array path
+
     single = list(values)
     single[place] = kelvins
-    result = cast("Any", function.vector)(*single)
-    if unit is not None and unit != function.result_unit:
-        result = result * factor(function.result_unit, unit)
+    with np.errstate(over="ignore", invalid="ignore"):
+        result = cast("Any", function.vector)(*single)
+        if unit is not None and unit != function.result_unit:
+            result = result * factor(function.result_unit, unit)
+        if not math.isfinite(result.sum()):
+            raise NotANumber(function=f"TF.{function.name}")
     return result
 
 
@@ -427,9 +439,6 @@ def _scalar(function: Function, values: list[object], unit: str | None, place: i
     single = list(values)
     single[place] = t
     try:
-        result = function.compute(*single, record=None)
-        if unit is not None and unit != function.result_unit:
-            result = _in_unit(cast("float", result), function.result_unit, unit, None)
+        return _computed(function, single, unit, None)
     except ThermofuncsError as error:
         return error.as_cell()
-    return result

@@ -16,11 +16,18 @@ NAME = Argument("name", "the name of a worksheet function, such as LNK", "name")
 ARGUMENTS = Argument("arguments", "the arguments of that call", "any", variadic=True)
 
 
+def _refuse_own(name: str) -> None:
+    """Refuse a call of this group within another: it has nothing behind it, and could nest without end."""
+    if name.strip().upper().removeprefix("TF.").removeprefix("TF_") in {f.name for f in FUNCTIONS}:
+        raise OneCallOnly(function=name, why="it explains other calls itself")
+
+
 def working(name: str, arguments: list[object], record: Record | None = None) -> list[list[object]]:
     """The steps behind a scalar call, as a table that ends in its value."""
     from thermofuncs.catalogue.evaluation import explain  # noqa: PLC0415  it walks the catalogue, this file too
 
     del record
+    _refuse_own(name)
     explained = explain(name, arguments)
     if isinstance(explained.result, CellError):
         raise OneCallOnly(function=name, why=explained.result.sentence or str(explained.result))
@@ -38,6 +45,7 @@ def cautions(name: str, arguments: list[object], record: Record | None = None) -
     from thermofuncs.catalogue.evaluation import explain  # noqa: PLC0415  as above
 
     del record
+    _refuse_own(name)
     explained = explain(name, arguments)
     sentences = list(explained.cautions)
     if isinstance(explained.result, CellError):

@@ -132,7 +132,8 @@ def affinity(
 ) -> float:
     """RT ln(K/Q). [kJ/mol]"""
     natural = standard.ln_k(table_of(reaction, data, options), temperature, record)
-    return quotient.affinity(natural, quotient.ln_quotient(reaction, activities, record), temperature, record)
+    q = quotient.ln_quotient(reaction, activities, record, atm=options.atm)
+    return quotient.affinity(natural, q, temperature, record)
 
 
 def emf(
@@ -142,12 +143,12 @@ def emf(
     """Cell voltage; a half reaction with e- is against the standard hydrogen electrode. [V]"""
     written = quotient.electrons_in(reaction)
     if written and abs(float(written)) != electrons:
-        raise ElectronCount(given=f"{electrons:g}", needed=f"{abs(float(written)):g}, as the half reaction has")
+        raise ElectronCount(given=f"{electrons:g}", needed=f"the {abs(float(written)):g} of the half reaction")
     if written > 0:
         raise ElectronCount(given="e- on the right", needed="the half reaction as a reduction, e- on the left")
     table = compiled.electrode_reaction(reaction, data, options.atm, options.extrapolate)
     natural = standard.ln_k(table, temperature, record)
-    q = 0.0 if activities is None else quotient.ln_quotient(reaction, activities, record)
+    q = 0.0 if activities is None else quotient.ln_quotient(reaction, activities, record, atm=options.atm)
     if record is not None and written:
         record.caution("The half reaction is against the standard hydrogen electrode at the same temperature.")
     return quotient.cell_voltage(natural, q, temperature, electrons, record)

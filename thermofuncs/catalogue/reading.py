@@ -11,6 +11,7 @@ from thermofuncs.errors import (
     BlankArgument,
     CellError,
     MissingArgument,
+    QuantityOutsideNumbers,
     ThermofuncsError,
     UnknownOption,
     WrongType,
@@ -90,6 +91,14 @@ def first_error(rows: Sequence[Sequence[object]]) -> None:
                 raise PassedError(cell)
 
 
+def as_float(value: float, argument: Argument) -> float:
+    """A number as the number of a cell; an integer from Python may be too large for one."""
+    try:
+        return float(value)
+    except OverflowError:
+        raise QuantityOutsideNumbers(argument=argument.name, given="an integer beyond 1e308") from None
+
+
 def read_temperature(value: object, argument: Argument, options: Options) -> float:
     """A temperature in kelvin."""
     if type(value) is float and options is PLAIN and 0.0 < value < float("inf"):
@@ -98,7 +107,7 @@ def read_temperature(value: object, argument: Argument, options: Options) -> flo
         raise WrongType(
             argument=argument.name, given=described(value), needed="a temperature: a number or a text with unit"
         )
-    return kelvin(value if isinstance(value, str) else float(value), argument.name, options.scale)
+    return kelvin(value if isinstance(value, str) else as_float(value, argument), argument.name, options.scale)
 
 
 def read_number(value: object, argument: Argument, _: Options) -> float:
@@ -111,7 +120,7 @@ def read_number(value: object, argument: Argument, _: Options) -> float:
         )
     if isinstance(value, str) and argument.unit == "1":
         raise WrongType(argument=argument.name, given=described(value), needed="a number")
-    return quantity(value if isinstance(value, str) else float(value), argument.unit, argument.name)
+    return quantity(value if isinstance(value, str) else as_float(value, argument), argument.unit, argument.name)
 
 
 def read_text(value: object, argument: Argument, _: Options) -> str:

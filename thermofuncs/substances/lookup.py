@@ -81,10 +81,13 @@ def find_substance(text: str, data: UserData | None = None, argument: str = "rea
 Failure = tuple[type[ThermofuncsError], dict[str, str]]
 
 
+LONGEST_GIVEN = 400  # characters of a value in a sentence
+
+
 class _Stop(Exception):
     def __init__(self, kind: type[ThermofuncsError], **values: str) -> None:
         super().__init__()
-        self.failure: Failure = (kind, values)
+        self.failure: Failure = (kind, {name: value[:LONGEST_GIVEN] for name, value in values.items()})
 
 
 @lru_cache(maxsize=8192)

@@ -22,6 +22,8 @@ ENTROPIES = frozenset({"S", "Cp", "u(S)", "drS", "drCp"})
 # a has the case of the NASA forms, A that of Shomate's equation: these two families keep their case
 CASED = frozenset(n for n in NUMBERS if len(n) <= 2 and n != "S")
 
+LARGEST = 1e60  # a number of the table; its products with powers of T stay in the range of numbers
+
 _HEADER = re.compile(r"(.*?)\s*(?:\[([^\[\]]*)\])?")
 _POWER = re.compile(r"(?:c ?\* ?|Cp ?\*? ?)T ?\^ ?([+-]?\d+(?:\.\d+)?(?:/\d+)?)", re.IGNORECASE)
 _NAMES = {name.casefold(): name for name in (*TEXTS, *NUMBERS) if name not in CASED}
@@ -41,7 +43,8 @@ def column_of(header: str) -> tuple[str, str] | None:
     power = _POWER.fullmatch(name)
     if power:
         top, _, bottom = power[1].partition("/")
-        return f"T^{float(top) / float(bottom or 1):.12g}", unit
+        below = float(bottom or 1)
+        return (f"T^{float(top) / below:.12g}", unit) if below else None
     if name in CASED:
         return name, unit
     known = _NAMES.get(name.casefold())
@@ -136,8 +139,11 @@ class Cells:
         if isinstance(value, bool) or not isinstance(value, int | float):
             self.fault(column, f"is {value!r}, which is no number")
             return None
-        if not math.isfinite(value):
+        if isinstance(value, float) and not math.isfinite(value):
             self.fault(column, "is not finite")
+            return None
+        if abs(value) > LARGEST:
+            self.fault(column, f"is beyond {LARGEST:g}")
             return None
         return float(value)
 

@@ -24,6 +24,7 @@ from thermofuncs.substances.user_cells import Cells
 from thermofuncs.units import R
 
 PHASES = {**WRITTEN_PHASES, "gas": "g", "liquid": "l", "solid": "s"}
+LARGEST_EXPONENT = 12
 FORMS = ("constant", "powers", "Shomate", "NASA-7", "NASA-9")
 SHOMATE = ("A", "B", "C", "D", "E")
 Terms = tuple[tuple[float, float], ...]
@@ -147,7 +148,9 @@ def _terms(form: str, cells: Cells) -> Terms | None:  # noqa: PLR0911  one retur
         for column in cells.table.columns:
             value = cells.number_of(column) if column.startswith("T^") else None
             scale = cells.heat_capacity_factor(column) if value is not None else None
-            if value is not None and scale is not None:
+            if value is not None and abs(float(column[2:])) > LARGEST_EXPONENT:
+                cells.fault(f"Cp {column}", f"the exponents of T go from -{LARGEST_EXPONENT} to {LARGEST_EXPONENT}")
+            elif value is not None and scale is not None:
                 terms.append((float(column[2:]), value * scale / R))
         if not terms:
             cells.fault("Cp T^n", "no coefficient is given")
