@@ -59,7 +59,7 @@ def test_recalc_writes_a_copy(clean: Path) -> None:
     assert (done.returncode, done.stderr) == (0, "")
     copy = clean.with_name("clean-recalculated.xlsx")
     assert done.stdout.splitlines()[-1] == f"Wrote {copy}"
-    assert "2 cells recalculated with 1 calls, 2 changed, 0 are errors, 0 keep" in done.stdout
+    assert "2 cells recalculated with 1 calls. Changed: 2. Errors: 0. Stored value kept: 0." in done.stdout
     assert clean.read_bytes() == before
     assert read_book(copy).value(Place("S", 1, 1)) == call("LNK", SHIFT, 900.0)
     assert run("recalc", str(clean)).stdout.splitlines()[-1].endswith("clean-recalculated-2.xlsx")

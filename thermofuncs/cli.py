@@ -127,7 +127,7 @@ def call(
     if isinstance(result, CellError):
         _complain(f"{result.value} {result.sentence}")
     else:
-        show_value(result, function.result_unit)
+        show_value(result, explanation.steps[-1].unit if explanation.steps else function.result_unit)
     for caution in explanation.cautions:
         _complain(f"Caution: {caution}")
     raise typer.Exit(Exit.WITH_ERRORS if _has_error(result) else Exit.DONE)

@@ -116,8 +116,8 @@ def show_recalculation(result: Recalculation, target: Path) -> None:
     """Print what a recalculation did."""
     console = _console()
     console.print(
-        f"{len(result.values)} cells recalculated with {result.calls} calls, {len(result.changes)} changed, "
-        f"{len(result.errors)} are errors, {len(result.kept)} keep their stored value."
+        f"{len(result.values)} cells recalculated with {result.calls} calls. "
+        f"Changed: {len(result.changes)}. Errors: {len(result.errors)}. Stored value kept: {len(result.kept)}."
     )
     changes = [
         (
@@ -173,13 +173,18 @@ def _show_call(console: Console, number: int, call: CallWorking) -> None:
     for text, value in zip(call.site.texts, call.arguments, strict=False):
         if value is not None:
             console.print(f"   {harmless(text)} is {shown_value(value)}", soft_wrap=True)
+    steps = call.explanation.steps
+    sources = [source for source in dict.fromkeys(step.source for step in steps) if source]
+    marks = {source: f"[{n}]" for n, source in enumerate(sources, 1)}
     rows = [
-        (step.symbol, step.relation, step.substituted, shown_value(step.value), step.unit, step.source)
-        for step in call.explanation.steps
+        (step.symbol, step.relation, step.substituted, shown_value(step.value), step.unit, marks.get(step.source, ""))
+        for step in steps
     ]
     if rows:
         headers = ("symbol", "relation", "with numbers", "value", "unit", "source")
         _print_table(console, _table(headers, rows))
+    for source, mark in marks.items():
+        console.print(f"   {mark} {harmless(source)}", soft_wrap=True)
     result = call.explanation.result
     sentence = f" {result.sentence}" if isinstance(result, CellError) else ""
     same = "" if call.same else " This is NOT what the recalculation got."

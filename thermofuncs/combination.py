@@ -23,6 +23,7 @@ if TYPE_CHECKING:
     from numpy.typing import NDArray
 
     Array = NDArray[np.float64]
+    Formula = Callable[["Coefficients", Array, Array, Array], Array]
 
 CHUNK = 10_000  # temperatures at a time: the arrays of one chunk stay in the cache of the processor
 FEW_INTERVALS = 2  # so many joints within a chunk
@@ -235,9 +236,7 @@ class Combination:
 
         return np.array(self.uppers)
 
-    def _by_interval(
-        self, temperatures: Array, formula: Callable[[Coefficients, Array], Array]
-    ) -> Array:
+    def _by_interval(self, temperatures: Array, formula: Formula) -> Array:
         """Apply a formula over a flat array, chunk by chunk and interval by interval."""
         import numpy as np  # noqa: PLC0415  as above
 
@@ -250,19 +249,17 @@ class Combination:
             if not (low <= t_min and t_max <= high):
                 raise self.outside(t_min if not low <= t_min else t_max)
             first, last = bisect_left(self.uppers, t_min), bisect_left(self.uppers, t_max)
-            if first == last:
-                out[:] = formula(self.table[first], t)
-                continue
+            log, r = np.log(t), 1.0 / t
+            out[:] = formula(self.table[first], t, log, r)
             if last - first <= FEW_INTERVALS:  # cheaper to compute all and choose than to gather
-                out[:] = formula(self.table[first], t)
                 for i in range(first + 1, last + 1):
-                    np.copyto(out, formula(self.table[i], t), where=t > self.uppers[i - 1])
+                    np.copyto(out, formula(self.table[i], t, log, r), where=t > self.uppers[i - 1])
                 continue
             index = np.searchsorted(self._limits, t, side="left")
-            for i in range(first, last + 1):
+            for i in range(first + 1, last + 1):
                 chosen = np.flatnonzero(index == i)
                 if chosen.size:
-                    out[chosen] = formula(self.table[i], t[chosen])
+                    out[chosen] = formula(self.table[i], t[chosen], log[chosen], r[chosen])
         return result
 
     def cp_array(self, temperatures: Array) -> Array:
@@ -308,43 +305,39 @@ def continued(interval: Interval, at: float, t_low: float, t_high: float) -> Int
     return anchored(t_low, t_high, terms, enthalpy(interval, at) * at, entropy(interval, at), at)
 
 
-def _cp_array(c: Coefficients, t: Array) -> Array:
+def _cp_array(c: Coefficients, t: Array, _: Array, r: Array) -> Array:
+    """Cp/R of one interval, from T, ln T and 1/T, which the intervals of a chunk share."""
     a1, a2, a3, a4, a5, a6, a7 = c.cp
-    r = 1.0 / t
-    value: Array = (a1 * r + a2) * r + a3 + t * (a4 + t * (a5 + t * (a6 + t * a7)))
+    value: Array = (a1 * r + a2) * r + a3
+    value += t * (a4 + t * (a5 + t * (a6 + t * a7)))
     for n, x in c.others:
         value += x * t**n
     return value
 
 
-def _h_array(c: Coefficients, t: Array) -> Array:
-    import numpy as np  # noqa: PLC0415  as above
-
+def _h_array(c: Coefficients, t: Array, log: Array, r: Array) -> Array:
+    """H/(RT), as above."""
     a1, a2, a3, a4, a5, a6, a7 = c.h
-    r = 1.0 / t
-    value: Array = (a2 * np.log(t) + a1 * r + c.b1) * r + a3 + t * (a4 + t * (a5 + t * (a6 + t * a7)))
+    value: Array = (a2 * log + a1 * r + c.b1) * r + a3
+    value += t * (a4 + t * (a5 + t * (a6 + t * a7)))
     for n, x in c.others:
-        value += x / (n + 1) * t**n
+        value += x * t**n / (n + 1)
     return value
 
 
-def _s_array(c: Coefficients, t: Array) -> Array:
-    import numpy as np  # noqa: PLC0415  as above
-
+def _s_array(c: Coefficients, t: Array, log: Array, r: Array) -> Array:
+    """S/R, as above."""
     a1, a2, a3, a4, a5, a6, a7 = c.s
-    r = 1.0 / t
-    value: Array = (a1 * r + a2) * r + a3 * np.log(t) + c.b2 + t * (a4 + t * (a5 + t * (a6 + t * a7)))
+    value: Array = (a1 * r + a2) * r + a3 * log + c.b2
+    value += t * (a4 + t * (a5 + t * (a6 + t * a7)))
     for n, x in c.others:
-        value += x / n * t**n
+        value += x * t**n / n
     return value
 
 
-def _minus_g_array(c: Coefficients, t: Array) -> Array:
+def _minus_g_array(c: Coefficients, t: Array, log: Array, r: Array) -> Array:
     """S/R − H/(RT) as one polynomial: half the work of the two."""
-    import numpy as np  # noqa: PLC0415  as above
-
     a1, a2, a3, a4, a5, a6, a7 = c.cp
-    log, r = np.log(t), 1.0 / t
     value: Array = t * (a7 / 20)
     for a in (a6 / 12, a5 / 6, a4 / 2):
         value += a

@@ -230,7 +230,8 @@ def test_what_no_cell_of_a_range_can_answer_is_the_error_of_each() -> None:
     """A reaction that cannot be read gives its error in every cell of the range, from Python too."""
     alone = evaluate("LNK", ["CO(g) + H2O(g)", 500.0])
     assert isinstance(alone, CellError)
-    for temperatures in ([[500.0], [600.0]], np.array([500.0, 600.0])):
+    both: list[Any] = [[[500.0], [600.0]], np.array([500.0, 600.0])]
+    for temperatures in both:
         assert call("LNK", "CO(g) + H2O(g)", temperatures) == [[alone], [alone]]
 
 

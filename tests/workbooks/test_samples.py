@@ -8,9 +8,7 @@ from __future__ import annotations
 
 import json
 import math
-import os
 import re
-import shutil
 import subprocess
 import sys
 import xml.etree.ElementTree as ET
@@ -200,32 +198,12 @@ def test_what_a_checker_must_see(name: str) -> None:
     assert "licensed practice come first" in texts
 
 
-@pytest.fixture
-def saved_by_the_spreadsheet(tmp_path: Path) -> Callable[[Path], Path]:
-    """Opens a workbook in the real spreadsheet program and saves it in that program's own way."""
-    program = shutil.which("soffice")
-    if program is None:
-        if os.environ.get("THERMOFUNCS_REQUIRE_OFFICE") == "1":
-            pytest.fail("soffice is not installed, and THERMOFUNCS_REQUIRE_OFFICE is 1")
-        pytest.skip("soffice is not installed")
-
-    def save(path: Path) -> Path:
-        command = [
-            program, f"-env:UserInstallation=file://{tmp_path}/profile", "--headless", "--convert-to",
-            "xlsx:Calc MS Excel 2007 XML", "--outdir", str(tmp_path / "saved"), str(path),
-        ]  # fmt: skip
-        subprocess.run(command, check=True, capture_output=True, timeout=180)
-        return tmp_path / "saved" / path.name
-
-    return save
-
-
 @pytest.mark.parametrize("name", SAMPLES)
 def test_expected_cells_of_a_file_that_the_spreadsheet_saved(
-    saved_by_the_spreadsheet: Callable[[Path], Path], name: str, tmp_path: Path
+    office: Callable[[Path, str], Path], name: str, tmp_path: Path
 ) -> None:
     """Saved by LibreOffice and recalculated, each sample gives every expected cell, and only its sheets change."""
-    saved = saved_by_the_spreadsheet(sample(name))
+    saved = office(sample(name), "xlsx:Calc MS Excel 2007 XML")
     result = recalculated(saved)
     assert result.kept == []
     assert missed(name, result) == []

@@ -19,7 +19,7 @@ ARGUMENTS = Argument("arguments", "the arguments of that call", "any", variadic=
 def _refuse_own(name: str) -> None:
     """Refuse a call of this group within another: it has nothing behind it, and could nest without end."""
     if name.strip().upper().removeprefix("TF.").removeprefix("TF_") in {f.name for f in FUNCTIONS}:
-        raise OneCallOnly(function=name, why="it explains other calls itself")
+        raise OneCallOnly(function=name, why="it explains other calls itself.")
 
 
 def working(name: str, arguments: list[object], record: Record | None = None) -> list[list[object]]:

@@ -320,6 +320,8 @@ class _Work:
         area = formula.stored.area
         if formula.stored.dynamic:
             self._note_spill(place)
+        elif formula.stored.kind == "array":
+            self._note_cut(place)
         for row in range(area.top, area.bottom + 1):
             for column in range(area.left, area.right + 1):
                 cell = Place(place.sheet, row, column)
@@ -342,6 +344,20 @@ class _Work:
                 f"{place} now fills {rows} x {columns} cells, and its stored range is "
                 f"{area.rows} x {area.columns}: only the stored range was written. "
                 "Open the copy in the spreadsheet to spill it anew."
+            )
+
+    def _note_cut(self, place: Place) -> None:
+        """Say where an array formula's range is smaller than the table of its one call."""
+        formula = self.formulas[place]
+        answers = [self.evaluation.answers.get(site.number) for site in formula.sites]
+        table = answers[0].result if len(answers) == 1 and answers[0] is not None else None
+        if not isinstance(table, list):
+            return
+        area, rows, columns = formula.stored.area, len(table), max(len(row) for row in table)
+        if rows > area.rows or columns > area.columns:
+            self.result.notes.append(
+                f"{place} gives a table of {rows} x {columns} cells, and its array formula is {area.rows} x "
+                f"{area.columns}: the rest is not shown. Widen the range of the array formula."
             )
 
     def _sentence(self, place: Place, value: CellError) -> str:
