@@ -11,7 +11,6 @@ import math
 from bisect import bisect_left
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass
-from functools import cached_property
 from typing import TYPE_CHECKING
 
 from thermofuncs.errors import NothingToExtrapolate, OnlyGibbsEnergy, OutsideRange
@@ -23,10 +22,9 @@ if TYPE_CHECKING:
     from numpy.typing import NDArray
 
     Array = NDArray[np.float64]
-    Formula = Callable[["Coefficients", Array, Array, Array], Array]
+    Formula = Callable[["Coefficients", Array], Array]
 
 CHUNK = 10_000  # temperatures at a time: the arrays of one chunk stay in the cache of the processor
-FEW_INTERVALS = 2  # so many joints within a chunk
 STANDARD_EXPONENTS = (-2.0, -1.0, 0.0, 1.0, 2.0, 3.0, 4.0)
 EXTRAPOLATION_LIMITS = (1.0, 20000.0)
 ATM_IN_BAR = 1.01325
@@ -230,15 +228,9 @@ class Combination:
             value += x / (n * (n + 1)) * temperature**n
         return value
 
-    @cached_property
-    def _limits(self) -> Array:
-        import numpy as np  # noqa: PLC0415  a bare import of the engine does not load the array path
-
-        return np.array(self.uppers)
-
     def _by_interval(self, temperatures: Array, formula: Formula) -> Array:
         """Apply a formula over a flat array, chunk by chunk and interval by interval."""
-        import numpy as np  # noqa: PLC0415  as above
+        import numpy as np  # noqa: PLC0415  a bare import of the engine does not load the array path
 
         result = np.empty_like(temperatures)
         low, high = self.t_low, self.uppers[-1]
@@ -249,17 +241,15 @@ class Combination:
             if not (low <= t_min and t_max <= high):
                 raise self.outside(t_min if not low <= t_min else t_max)
             first, last = bisect_left(self.uppers, t_min), bisect_left(self.uppers, t_max)
-            log, r = np.log(t), 1.0 / t
-            out[:] = formula(self.table[first], t, log, r)
-            if last - first <= FEW_INTERVALS:  # cheaper to compute all and choose than to gather
-                for i in range(first + 1, last + 1):
-                    np.copyto(out, formula(self.table[i], t, log, r), where=t > self.uppers[i - 1])
+            if first == last:
+                out[:] = formula(self.table[first], t)
                 continue
-            index = np.searchsorted(self._limits, t, side="left")
-            for i in range(first + 1, last + 1):
-                chosen = np.flatnonzero(index == i)
-                if chosen.size:
-                    out[chosen] = formula(self.table[i], t[chosen], log[chosen], r[chosen])
+            for i in range(first, last + 1):
+                inside = t <= self.uppers[i]
+                if i > first:
+                    inside &= t > self.uppers[i - 1]
+                places = np.flatnonzero(inside)
+                out[places] = formula(self.table[i], t.take(places))
         return result
 
     def cp_array(self, temperatures: Array) -> Array:
@@ -305,9 +295,10 @@ def continued(interval: Interval, at: float, t_low: float, t_high: float) -> Int
     return anchored(t_low, t_high, terms, enthalpy(interval, at) * at, entropy(interval, at), at)
 
 
-def _cp_array(c: Coefficients, t: Array, _: Array, r: Array) -> Array:
-    """Cp/R of one interval, from T, ln T and 1/T, which the intervals of a chunk share."""
+def _cp_array(c: Coefficients, t: Array) -> Array:
+    """Cp/R of one interval."""
     a1, a2, a3, a4, a5, a6, a7 = c.cp
+    r = 1.0 / t
     value: Array = (a1 * r + a2) * r + a3
     value += t * (a4 + t * (a5 + t * (a6 + t * a7)))
     for n, x in c.others:
@@ -315,35 +306,50 @@ def _cp_array(c: Coefficients, t: Array, _: Array, r: Array) -> Array:
     return value
 
 
-def _h_array(c: Coefficients, t: Array, log: Array, r: Array) -> Array:
-    """H/(RT), as above."""
+def _h_array(c: Coefficients, t: Array) -> Array:
+    """H/(RT) of one interval."""
+    import numpy as np  # noqa: PLC0415  as above
+
     a1, a2, a3, a4, a5, a6, a7 = c.h
-    value: Array = (a2 * log + a1 * r + c.b1) * r + a3
+    r = 1.0 / t
+    value: Array = (a2 * np.log(t) + a1 * r + c.b1) * r + a3
     value += t * (a4 + t * (a5 + t * (a6 + t * a7)))
     for n, x in c.others:
         value += x * t**n / (n + 1)
     return value
 
 
-def _s_array(c: Coefficients, t: Array, log: Array, r: Array) -> Array:
-    """S/R, as above."""
+def _s_array(c: Coefficients, t: Array) -> Array:
+    """S/R of one interval."""
+    import numpy as np  # noqa: PLC0415  as above
+
     a1, a2, a3, a4, a5, a6, a7 = c.s
-    value: Array = (a1 * r + a2) * r + a3 * log + c.b2
+    r = 1.0 / t
+    value: Array = (a1 * r + a2) * r + a3 * np.log(t) + c.b2
     value += t * (a4 + t * (a5 + t * (a6 + t * a7)))
     for n, x in c.others:
         value += x * t**n / n
     return value
 
 
-def _minus_g_array(c: Coefficients, t: Array, log: Array, r: Array) -> Array:
+def _minus_g_array(c: Coefficients, t: Array) -> Array:
     """S/R − H/(RT) as one polynomial: half the work of the two."""
+    import numpy as np  # noqa: PLC0415  as above
+
     a1, a2, a3, a4, a5, a6, a7 = c.cp
+    log, r = np.log(t), 1.0 / t
     value: Array = t * (a7 / 20)
     for a in (a6 / 12, a5 / 6, a4 / 2):
         value += a
         value *= t
-    value += (c.b2 - a3) + a3 * log
-    value += r * ((a1 / 2) * r - (a2 + c.b1) - a2 * log)
+    part = a3 * log
+    part += c.b2 - a3
+    value += part
+    part = (a1 / 2) * r
+    part -= a2 + c.b1
+    part -= a2 * log
+    part *= r
+    value += part
     for n, x in c.others:
         value += x / (n * (n + 1)) * t**n
     return value

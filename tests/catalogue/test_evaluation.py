@@ -317,7 +317,7 @@ def test_cautions_of_a_range_are_those_of_its_cells() -> None:
 @pytest.mark.parametrize("shape", [(6,), (6, 1), (1, 6), (2, 3)])
 def test_arrays_come_back_as_arrays_of_their_shape(dtype: type, shape: tuple[int, ...]) -> None:
     """A numpy array of temperatures gives an array of its shape, with the values of the list of rows."""
-    temperatures = np.arange(500, 500 + 100 * math.prod(shape), 100).astype(dtype).reshape(shape)
+    temperatures: Any = np.arange(500, 500 + 100 * math.prod(shape), 100).astype(dtype).reshape(shape)
     found = call("LNK", SHIFT, temperatures)
     assert isinstance(found, np.ndarray)
     assert found.dtype == np.float64
