@@ -148,11 +148,16 @@ def read_unit(value: object, argument: Argument, options: Options) -> str:
     return text
 
 
-def read_list(value: object, _: Argument, __: Options) -> list[object]:
+def as_cell(value: object, argument: Argument) -> object:
+    """A cell of a list or a table: a whole number as the float that a cell would hold."""
+    return as_float(value, argument) if type(value) is int else value
+
+
+def read_list(value: object, argument: Argument, _: Options) -> list[object]:
     """A range as one list, row by row."""
     rows = cells(value)
     first_error(rows)
-    return [cell for row in rows for cell in row]
+    return [as_cell(cell, argument) for row in rows for cell in row]
 
 
 def read_table(value: object, argument: Argument, _: Options) -> list[list[object]]:
@@ -161,7 +166,7 @@ def read_table(value: object, argument: Argument, _: Options) -> list[list[objec
         raise WrongType(argument=argument.name, given=described(value), needed=f"a range: {argument.meaning}")
     rows = cells(value)
     first_error(rows)
-    return rows
+    return [[as_cell(cell, argument) for cell in row] for row in rows]
 
 
 def read_data(value: object, argument: Argument, options: Options) -> UserData:
