@@ -22,6 +22,7 @@ FLOORS = {
     "reactions": 2, "balancing": 2,
     "combination": 3, "compiled": 3, "standard": 3, "quotient": 3,
     "relations": 3, "conversions": 3, "rate_constants": 3, "vapour_pressure": 3, "heat_capacity_sums": 3,
+    "fits": 3,
     "catalogue": 5,
     "workbook": 6,
     "reference_page": 8, "cli": 8, "cli_output": 8,

@@ -1,0 +1,182 @@
+"""The measured points of a fit: read from columns, blanks left out, in one canonical order."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Sequence
+from typing import NamedTuple
+
+from thermofuncs.errors import (
+    DifferentLengths,
+    NotAboveZeroInRange,
+    TextInRange,
+    TooFewPoints,
+)
+from thermofuncs.fits.laws import Law
+from thermofuncs.fits.measures import Measure
+from thermofuncs.units import kelvin
+
+Floats = list[float]
+_NUMBERS = {float}
+
+
+class Points(NamedTuple):
+    """Points in canonical order: by temperature, then value, then uncertainty.
+
+    Parameters
+    ----------
+    temperatures : list of float. [K]
+    logs : list of float. The logarithm that the law fits: of K, k or p in the standard unit, for Eyring of K‡.
+    u_logs : list of float or None. Standard uncertainties of the logarithms; None where none are given.
+    rows : list of int. The place of each point among the rows as given.
+    given : int. How many rows were given, with those that have a blank.
+    """
+
+    temperatures: Floats
+    logs: Floats
+    u_logs: Floats | None
+    rows: list[int]
+    given: int
+
+    @property
+    def size(self) -> int:
+        """How many points there are."""
+        return len(self.temperatures)
+
+    @property
+    def left_out(self) -> int:
+        """How many rows have a blank."""
+        return self.given - self.size
+
+    @property
+    def low(self) -> float:
+        """Lowest temperature. [K]"""
+        return self.temperatures[0]
+
+    @property
+    def high(self) -> float:
+        """Highest temperature. [K]"""
+        return self.temperatures[-1]
+
+    @property
+    def mean(self) -> float:
+        """The temperature at the mean of 1/T. [K]"""
+        return self.size / math.fsum([1.0 / t for t in self.temperatures])
+
+
+def read_points(
+    law: Law,
+    measure: Measure,
+    temperatures: Sequence[object],
+    values: Sequence[object],
+    uncertainties: Sequence[object] | None = None,
+    scale: str = "K",
+) -> Points:
+    """The points of columns of cells.
+
+    Parameters
+    ----------
+    law : Law.
+    measure : Measure. What ``values`` holds.
+    temperatures, values, uncertainties : sequences. One cell for each point; None or an empty text is blank,
+        and a row with a blank is left out. A temperature is a number in ``scale`` or a quantity text.
+    scale : str. The scale of bare temperatures.
+
+    Raises
+    ------
+    DifferentLengths, TextInRange, NotAboveZeroInRange
+        The columns do not go together, or a cell cannot be used.
+    BelowAbsoluteZero, NotAQuantity, WrongDimension, UnknownUnit
+        A temperature cannot be read.
+    TooFewPoints
+        There are not as many different temperatures as the law has parameters.
+    """
+    n = len(temperatures)
+    if uncertainties is None and n == len(values) and scale == "K":
+        found = _plain(law, measure, temperatures, values)
+        if found is not None:
+            return found
+    columns = [("T", temperatures), ("y", values)]
+    if uncertainties is not None:
+        columns.append(("u", uncertainties))
+    for name, column in columns[1:]:
+        if len(column) != n:
+            raise DifferentLengths(first="T", n_first=n, second=name, n_second=len(column))
+    kept = [i for i in range(n) if not any(c[i] is None or c[i] == "" for _, c in columns)]
+    t = _temperatures(temperatures, kept, scale)
+    y = _numbers("y", values, kept)
+    u = None if uncertainties is None else _numbers("u", uncertainties, kept)
+    if measure.scale == "value":
+        _positive("y", y, kept, measure.symbol, ", as its logarithm is taken")
+    if u is not None:
+        _positive("u", u, kept, "a standard uncertainty", "")
+    order = sorted(range(len(t)), key=lambda i: (t[i], y[i], u[i] if u is not None else 0.0, kept[i]))
+    t, y = [t[i] for i in order], [y[i] for i in order]
+    u_logs = None if u is None else [measure.u_ln(b, u[i]) for i, b in zip(order, y, strict=True)]
+    return _logarithms(law, measure, t, y, u_logs, [kept[i] for i in order], n)
+
+
+def _plain(law: Law, measure: Measure, temperatures: Sequence[object], values: Sequence[object]) -> Points | None:
+    """The points of two columns of good numbers, without a look at each cell; None where one needs it."""
+    if {*map(type, temperatures), *map(type, values)} != _NUMBERS:
+        return None
+    triples = sorted(zip(temperatures, values, range(len(values)), strict=True))  # type: ignore[type-var]  # floats
+    t, y, rows = zip(*triples, strict=True)
+    # a sum that is finite has finite terms
+    if not (t[0] > 0.0 and math.isfinite(sum(t) + sum(y))) or (measure.scale == "value" and not min(y) > 0.0):  # type: ignore[operator]
+        return None
+    return _logarithms(law, measure, list(t), list(y), None, list(rows), len(rows))  # type: ignore[arg-type]
+
+
+def _logarithms(
+    law: Law, measure: Measure, t: Floats, y: Floats, u_logs: Floats | None, rows: list[int], given: int
+) -> Points:
+    """The points of sorted columns."""
+    if not t or t[0] == t[-1] or (law.count > 2 and len(set(t)) < law.count):
+        distinct = len(set(t))
+        different = f"{len(t)} point{_s(len(t))} at {distinct} temperature{_s(distinct)}"
+        if len(t) < given:
+            different += f" (rows with a blank left out: {given - len(t)})"
+        remedy = (
+            "Measure at another temperature." if law.count == 2
+            else "Measure at more temperatures, or fit a law with fewer parameters."
+        )  # fmt: skip
+        raise TooFewPoints(law=law.name, parameters=law.count, given=different, remedy=remedy)
+    logs = list(map(math.log if measure.is_plain else measure.to_ln, y))
+    if law.family == "Eyring":
+        logs = [a - law.offset(b) for a, b in zip(logs, t, strict=True)]
+    return Points(t, logs, u_logs, rows, given)
+
+
+def _s(number: int) -> str:
+    return "" if number == 1 else "s"
+
+
+def _numbers(argument: str, column: Sequence[object], kept: Sequence[int]) -> Floats:
+    """The kept cells of a column as finite numbers."""
+    numbers = []
+    for i in kept:
+        cell = column[i]
+        if isinstance(cell, bool) or not isinstance(cell, int | float) or not math.isfinite(cell):
+            raise TextInRange(argument=argument, place=i + 1, given=repr(cell))
+        numbers.append(float(cell))
+    return numbers
+
+
+def _temperatures(column: Sequence[object], kept: Sequence[int], scale: str) -> Floats:
+    """The kept cells of a column as temperatures. [K]"""
+    found = []
+    for i in kept:
+        cell = column[i]
+        if isinstance(cell, bool) or not isinstance(cell, int | float | str):
+            raise TextInRange(argument="T", place=i + 1, given=repr(cell))
+        found.append(kelvin(cell if isinstance(cell, str) else float(cell), f"T, cell number {i + 1},", scale))
+    return found
+
+
+def _positive(argument: str, numbers: Floats, kept: Sequence[int], what: str, why: str) -> None:
+    """Refuse a number that is not above zero."""
+    for place, number in zip(kept, numbers, strict=True):
+        if not number > 0.0:
+            given = f"{number:g}"
+            raise NotAboveZeroInRange(argument=argument, given=given, place=place + 1, what=what, why=why)
