@@ -28,11 +28,14 @@ from thermofuncs.errors import (
     ThermofuncsError,
     TooManyArguments,
     UnknownFunction,
+    WrongType,
 )
 from thermofuncs.units import convert, factor
 from thermofuncs.working import Record, Step, shown
 
 ANY_TEMPERATURE = 298.15  # stands for a range of temperatures while the other arguments are read
+APART = ("unit", "input unit")  # kinds that are no argument of the computation
+SINGLE = (float, str)  # what most cells hold, known at a glance not to be a range
 EXPLAINED_CELLS = 2_000  # a range's cautions are gathered from at most so many of its cells
 
 
@@ -149,7 +152,10 @@ def run(function: Function, arguments: Sequence[object], record: Record | None) 
         raise TooManyArguments(function=function.signature, given=len(arguments), most=len(declared))
     options = options_of(function, arguments) if function.options else PLAIN
     for argument, value in zip(declared, arguments, strict=False):
-        if type(value) is not float and _is_range(value) and argument.kind in BROADCAST:
+        if type(value) not in SINGLE and argument.kind in BROADCAST and _is_range(value):
+            if function.result_shape == "table":
+                needed = f"one value ({argument.meaning})"
+                raise WrongType(argument=argument.name, given="a range of cells", needed=needed)
             return _over_range(function, arguments, options)
     values, unit = _read(function, arguments, options)
     result = function.compute(*values, record=record)
@@ -174,8 +180,8 @@ def _read(function: Function, arguments: Sequence[object], options: Options) -> 
         kind = argument.kind
         if type(value) is CellError:
             raise PassedError(value)
-        if kind == "options":
-            values.append(options)
+        if kind == "options" or (value is None and argument.optional):
+            values += [] if kind in APART else [options if kind == "options" else None]
             continue
         try:
             read = _read_one(function, arguments, argument, value, options)

@@ -58,7 +58,8 @@ def _estimate_row(fit: Fit, estimate: Estimate) -> list[object]:
 
 def _tests(fit: Fit) -> Table:
     rows: Table = []
-    for item, run in (("chi-square", chi_square), ("curvature", curvature), ("lack of fit", lack_of_fit), ("runs", runs)):
+    tests = (("chi-square", chi_square), ("curvature", curvature), ("lack of fit", lack_of_fit), ("runs", runs))
+    for item, run in tests:
         tested: Tested | None = run(fit)
         if tested is not None:
             rows += [
@@ -112,7 +113,9 @@ def _deviation_unit(fit: Fit) -> str:
     return f"of {fit.law.symbol}" if fit.settings.constant_in_value else f"of {fit.measure.log_name}"
 
 
-def _half_widths(value: float, widths: list[float | None], into: Callable[[float], float], gone: CellError) -> list[object]:
+def _half_widths(
+    value: float, widths: list[float | None], into: Callable[[float], float], gone: CellError
+) -> list[object]:
     """A value with the limits of its half widths, each transformed; rising or falling, the lower one first."""
     cells: list[object] = [into(value)]
     for width in widths:
@@ -154,7 +157,8 @@ def predictions(fit: Fit, t_new: list[object]) -> tuple[Table, list[float]]:
 
 def temperatures(fit: Fit, y_value: list[object]) -> tuple[Table, list[FittedTemperature]]:
     """The temperatures of values, with limits; a value alone that has none is its error, in a range its row's."""
-    table: Table = [[fit.measure.label, "T [K]", "u(T) [K]", "lower limit [K]", "upper limit [K]", "outside the points [K]"]]
+    head: list[object] = ["T [K]", "u(T) [K]", "lower limit [K]", "upper limit [K]", "outside the points [K]"]
+    table: Table = [[fit.measure.label, *head]]
     answers = []
     for place, cell in enumerate(y_value, 1):
         if cell is None or cell == "":
@@ -169,7 +173,8 @@ def temperatures(fit: Fit, y_value: list[object]) -> tuple[Table, list[FittedTem
                 raise
             table.append([float(cell), *[error.as_cell()] * 5])
             continue
-        gone = missing(fit, "a limit") if found.u is None else CellError("#N/A", "The points set no limit on this side.")
+        open_side = CellError("#N/A", "The points set no limit on this side.")
+        gone = missing(fit, "a limit") if found.u is None else open_side
         limits = [gone if x is None else x for x in (found.u, found.low, found.high)]
         table.append([float(cell), found.temperature, *limits, found.outside])
         answers.append(found)
@@ -188,7 +193,7 @@ def points(fit: Fit) -> Table:
     for d in diagnose(fit):
         why = CellError("#N/A", "The fit passes through this point, whose residual then says nothing.")
         table[d.row] = [
-            d.row + 1, d.temperature, d.observed, d.fitted, d.residual, why if d.standardised is None else d.standardised,
-            d.leverage, why if d.cook is None else d.cook,
+            d.row + 1, d.temperature, d.observed, d.fitted, d.residual,
+            why if d.standardised is None else d.standardised, d.leverage, why if d.cook is None else d.cook,
         ]  # fmt: skip
     return [head, *table]

@@ -60,7 +60,7 @@ def settings_of(options: Options) -> Settings:
     """
     chosen = dict(options.others)
     if "u_known" in chosen and "u_as_weights" in chosen:
-        raise OptionsClash(first="u_known", second="u_as_weights", why="they give different answers; choose one of them")
+        raise OptionsClash(first="u_known", second="u_as_weights", why="they give different answers; choose one")
     made = Settings(
         level=_level(chosen.get("level=", "0.95")),
         reference=_temperature(chosen["t_ref="], options.scale) if "t_ref=" in chosen else None,
@@ -171,27 +171,31 @@ def fit_value(
 ) -> float:
     """One number of a fit."""
     found = _fitted(law, t, y, y_is, u, options, record)
+    if quantity in found.quantities and record is None:
+        return found.value(quantity)
     kind, _, inside = quantity.strip().removesuffix(")").partition("(")
-    kind = kind.strip()
-    if not inside or kind not in {"u", "low", "high"}:
-        statistic = statistic_of(found, quantity)
-        if statistic is not None:
-            if record is not None:
-                record.step(statistic.name, statistic.what, found.solution.estimator, statistic.value, "1")
-            return statistic.value
-        name = found.name_of(quantity)
-        if record is None:
-            return found.value(name)
-        estimate = found.estimate(name)
+    if inside and kind in {"u", "low", "high"}:
+        return _uncertainty(found, kind, inside, record)
+    statistic = statistic_of(found, quantity)
+    if statistic is not None:
+        if record is not None:
+            record.step(statistic.name, statistic.what, found.solution.estimator, statistic.value, "1")
+        return statistic.value
+    estimate = found.estimate(found.name_of(quantity))
+    if record is not None:
         record_estimate(found, estimate, record)
-        return estimate.value
-    name = found.name_of(inside)
-    if record is None and kind == "u" and (quick := found.u(name)) is not None:
-        return quick
+    return estimate.value
+
+
+def _uncertainty(found: Fit, kind: str, quantity: str, record: Record | None) -> float:
+    """The standard uncertainty of a quantity, or one of its limits."""
+    name = found.name_of(quantity)
+    if record is None and kind == "u" and (u := found.u(name)) is not None:
+        return u
     estimate = found.estimate(name)
     value = {"u": estimate.u, "low": estimate.low, "high": estimate.high}[kind]
     if value is None:
-        raise NoUncertainty(what=quantity.strip(), n=found.points.size, parameters=found.law.count)
+        raise NoUncertainty(what=f"{kind}({quantity})", n=found.points.size, parameters=found.law.count)
     if record is not None:
         record_estimate(found, estimate, record, kind)
     return value
@@ -208,7 +212,7 @@ def fit_at(
         for temperature in outside:
             record.caution(distance(found, temperature))
         if found.points.u_logs is not None and len(set(found.points.u_logs)) > 1:
-            record.caution("Prediction limits are for a new point with the root mean square of the stated uncertainties.")
+            record.caution("Prediction limits are for a new point with the root mean square of the stated u.")
     return table
 
 
@@ -225,9 +229,9 @@ def fit_temperature(
                 record.caution(distance(found, answer.temperature))
             if answer.others:
                 others = ", ".join(f"{x:.6g} K" for x in answer.others[:5])
-                record.caution(f"The fit has this value at {others} too; the temperature nearest to the points is given.")
+                record.caution(f"The fit has this value at {others} too; the one nearest to the points is given.")
             if answer.u is not None and (answer.low is None or answer.high is None):
-                record.caution("The points set no limit on one side: the confidence band does not cross the value there.")
+                record.caution("The points set no limit on one side: the confidence band does not cross the value.")
     return table
 
 
@@ -258,8 +262,8 @@ def _function(
 
 FUNCTIONS: tuple[Function, ...] = (
     _function(
-        "FIT", "Table of a fit: parameters with uncertainties and limits, statistics, tests, cautions.", "table", (LAW,),
-        ("van't Hoff",), fit_report,
+        "FIT", "Table of a fit: parameters with uncertainties and limits, statistics, tests, cautions.", "table",
+        (LAW,), ("van't Hoff",), fit_report,
     ),
     _function(
         "FITVALUE", "One number of a fit: drH in kJ/mol, drS in J/(mol K), u(drH), lnK, Ea, R2, p(curvature), …",
@@ -278,8 +282,8 @@ FUNCTIONS: tuple[Function, ...] = (
         fit_temperature,
     ),
     _function(
-        "FITPOINTS", "Table of each point: residual, standardised residual, leverage, Cook's distance.", "table", (LAW,),
-        ("van't Hoff",), fit_points,
+        "FITPOINTS", "Table of each point: residual, standardised residual, leverage, Cook's distance.", "table",
+        (LAW,), ("van't Hoff",), fit_points,
     ),
     _function(
         "FITROW", "A fit as a reaction row for the data argument of reaction functions, with its range as source.",

@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from functools import lru_cache
+from itertools import chain
 
 from thermofuncs.catalogue.declaration import BLANK, Argument, Function
 from thermofuncs.errors import (
@@ -181,11 +182,12 @@ def read_unit(value: object, argument: Argument, options: Options) -> str:
 
 def read_list(value: object, _: Argument, __: Options) -> list[object]:
     """A range as one list, row by row."""
-    if hasattr(value, "ravel"):
-        value = [value.ravel().tolist()]
-    rows = value if isinstance(value, list) else [[value]]
-    flat = [cell for row in rows for cell in (row if isinstance(row, list | tuple) else (row,))]
-    if CellError in set(map(type, flat)):
+    if type(value) is not list:
+        value = [value.ravel().tolist()] if hasattr(value, "ravel") else [[value]]
+    if value and type(value[0]) is not list:
+        value = cells(value)
+    flat = list(chain.from_iterable(value))
+    if CellError in map(type, flat):
         first_error([flat])
     return flat
 

@@ -2,7 +2,7 @@
 
 from thermofuncs.fits.cautions import cautions, distance
 from thermofuncs.fits.diagnostics import PointDiagnosis, diagnose
-from thermofuncs.fits.fit import Estimate, Fit, fit
+from thermofuncs.fits.fitting import Estimate, Fit, fit
 from thermofuncs.fits.prediction import FittedTemperature, Prediction, predict, temperature_of
 from thermofuncs.fits.reaction_row import reaction_row
 from thermofuncs.fits.settings import PLAIN, Settings

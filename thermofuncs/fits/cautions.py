@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from thermofuncs.fits.diagnostics import diagnose
-from thermofuncs.fits.fit import Fit
+from thermofuncs.fits.fitting import Fit
 from thermofuncs.fits.statistics import Tested, chi_square, curvature, lack_of_fit, runs
 
 SIGNIFICANT = 0.05

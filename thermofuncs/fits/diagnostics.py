@@ -5,7 +5,7 @@ from __future__ import annotations
 import math
 from dataclasses import dataclass
 
-from thermofuncs.fits.fit import Fit
+from thermofuncs.fits.fitting import Fit
 
 LEVERAGE_OF_ONE = 1.0 - 1e-10  # above it the fit passes through the point and its residual says nothing
 

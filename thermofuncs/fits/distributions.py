@@ -6,8 +6,10 @@ The functions stand in scipy.special, which loads in a fraction of the time of t
 from __future__ import annotations
 
 import math
+from functools import lru_cache
 
 
+@lru_cache(maxsize=256)
 def limit_factor(level: float, degrees: int | None) -> float:
     """By how many standard uncertainties the two-sided limits stand off.
 

@@ -30,9 +30,9 @@ Coefficients = tuple[float, ...]
 Family = Literal["reaction", "Arrhenius", "Eyring", "vapour"]
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(frozen=True, slots=True, eq=False)
 class Law:
-    """A law.
+    """A law; each is one object, equal to itself alone.
 
     Parameters
     ----------
@@ -109,11 +109,14 @@ def read_law(text: str) -> Law:
     return law
 
 
+_CURVED = {
+    law: Law(law.name, law.family, 3, law.symbol, law.equation, CLARKE_GLEW_SOURCE) for law in LAWS if law.count == 2
+}
+
+
 def with_one_more(law: Law) -> Law | None:
     """The law that has one more term in the heat capacity, by which curvature is tested; None where there is none."""
-    if law.nonlinear or law.count > 2:
-        return None
-    return Law(law.name, law.family, 3, law.symbol, law.equation, CLARKE_GLEW_SOURCE)
+    return _CURVED.get(law)
 
 
 def basis(count: int, temperature: float, theta: float) -> Coefficients:

@@ -28,9 +28,9 @@ _EYRING_UNITS = {
 _RATES = (*_EYRING_UNITS, "rate of zeroth order")
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(frozen=True, slots=True, eq=False)
 class Measure:
-    """What a column holds.
+    """What a column holds; each reading of one text is one object.
 
     Parameters
     ----------
@@ -108,7 +108,8 @@ def read_measure(text: str | None, law: Law) -> Measure:
     if text is None:
         if law.symbol != "K":
             what = "the unit of the rate constants" if law.symbol == "k" else "the unit of the pressures"
-            raise RequiredHere(argument="y_is", needed_by=f"the law {law.name}", meaning=f"{what}, such as {_such(law)}")
+            meaning = f"{what}, such as {_such(law)}"
+            raise RequiredHere(argument="y_is", needed_by=f"the law {law.name}", meaning=meaning)
         text = "K"
     words = " ".join(text.split())
     scale = _OF_K.get(words.replace(" ", ""))

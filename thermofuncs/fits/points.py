@@ -4,6 +4,8 @@ from __future__ import annotations
 
 import math
 from collections.abc import Sequence
+from math import isfinite
+from operator import lt
 from typing import NamedTuple
 
 from thermofuncs.errors import (
@@ -25,17 +27,17 @@ class Points(NamedTuple):
 
     Parameters
     ----------
-    temperatures : list of float. [K]
+    temperatures : sequence of float. [K]
     logs : list of float. The logarithm that the law fits: of K, k or p in the standard unit, for Eyring of K‡.
     u_logs : list of float or None. Standard uncertainties of the logarithms; None where none are given.
-    rows : list of int. The place of each point among the rows as given.
+    rows : sequence of int. The place of each point among the rows as given.
     given : int. How many rows were given, with those that have a blank.
     """
 
-    temperatures: Floats
+    temperatures: Sequence[float]
     logs: Floats
     u_logs: Floats | None
-    rows: list[int]
+    rows: Sequence[int]
     given: int
 
     @property
@@ -92,10 +94,6 @@ def read_points(
         There are not as many different temperatures as the law has parameters.
     """
     n = len(temperatures)
-    if uncertainties is None and n == len(values) and scale == "K":
-        found = _plain(law, measure, temperatures, values)
-        if found is not None:
-            return found
     columns = [("T", temperatures), ("y", values)]
     if uncertainties is not None:
         columns.append(("u", uncertainties))
@@ -116,20 +114,22 @@ def read_points(
     return _logarithms(law, measure, t, y, u_logs, [kept[i] for i in order], n)
 
 
-def _plain(law: Law, measure: Measure, temperatures: Sequence[object], values: Sequence[object]) -> Points | None:
-    """The points of two columns of good numbers, without a look at each cell; None where one needs it."""
-    if {*map(type, temperatures), *map(type, values)} != _NUMBERS:
+def plain_points(law: Law, measure: Measure, temperatures: Sequence[float], values: Sequence[float]) -> Points | None:
+    """The points of two columns of floats, in kelvin, without a look at each; None where one is no good number."""
+    t, y, rows = temperatures, values, range(len(values))
+    if len(t) != len(y):
         return None
-    triples = sorted(zip(temperatures, values, range(len(values)), strict=True))  # type: ignore[type-var]  # floats
-    t, y, rows = zip(*triples, strict=True)
+    if not all(map(lt, t, t[1:])):
+        t, y, rows = zip(*sorted(zip(t, y, rows)))  # type: ignore[assignment]  # noqa: B905  of one length
     # a sum that is finite has finite terms
-    if not (t[0] > 0.0 and math.isfinite(sum(t) + sum(y))) or (measure.scale == "value" and not min(y) > 0.0):  # type: ignore[operator]
+    if not t or not (t[0] > 0.0 and isfinite(sum(t) + sum(y))) or (measure.scale == "value" and not min(y) > 0.0):
         return None
-    return _logarithms(law, measure, list(t), list(y), None, list(rows), len(rows))  # type: ignore[arg-type]
+    return _logarithms(law, measure, t, y, None, rows, len(rows))
 
 
 def _logarithms(
-    law: Law, measure: Measure, t: Floats, y: Floats, u_logs: Floats | None, rows: list[int], given: int
+    law: Law, measure: Measure, t: Sequence[float], y: Sequence[float], u_logs: Floats | None,
+    rows: Sequence[int], given: int,
 ) -> Points:
     """The points of sorted columns."""
     if not t or t[0] == t[-1] or (law.count > 2 and len(set(t)) < law.count):
@@ -157,7 +157,7 @@ def _numbers(argument: str, column: Sequence[object], kept: Sequence[int]) -> Fl
     numbers = []
     for i in kept:
         cell = column[i]
-        if isinstance(cell, bool) or not isinstance(cell, int | float) or not math.isfinite(cell):
+        if isinstance(cell, bool) or not isinstance(cell, int | float) or not isfinite(cell):
             raise TextInRange(argument=argument, place=i + 1, given=repr(cell))
         numbers.append(float(cell))
     return numbers

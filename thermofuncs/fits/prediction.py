@@ -8,7 +8,7 @@ from dataclasses import dataclass
 
 from thermofuncs.errors import NoFittedTemperature
 from thermofuncs.fits.estimators import slope_of
-from thermofuncs.fits.fit import Fit
+from thermofuncs.fits.fitting import Fit
 
 SEARCH = (0.2, 5.0, 400)  # of the lowest and the highest temperature of the points, and steps between
 PRECISION = 1e-13  # relative, of a temperature

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from thermofuncs.errors import NoReactionRow
-from thermofuncs.fits.fit import Fit
+from thermofuncs.fits.fitting import Fit
 
 COLUMNS = ("reaction", "drH", "drS", "drCp", "T_ref", "T_low", "T_high", "source")
 

@@ -65,7 +65,7 @@ class Settings:
             raise OptionsClash(first=special[0], second=special[1], why="each is an estimator; choose one of them")
         for wanted, name in ((self.robust, "robust"), (self.orthogonal, "orthogonal")):
             if wanted and nonlinear:
-                raise OptionsClash(first=name, second="the law Antoine", why="it is for laws linear in their parameters")
+                raise OptionsClash(first=name, second="the law Antoine", why="it is for laws with linear parameters")
 
 
 PLAIN = Settings()

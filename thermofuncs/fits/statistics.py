@@ -2,13 +2,14 @@
 
 from __future__ import annotations
 
+import itertools
 import math
 from dataclasses import dataclass
 
 from thermofuncs.errors import NotValid
 from thermofuncs.fits.distributions import as_few_runs, chi_square_above, f_above, two_sided
 from thermofuncs.fits.estimators import solve
-from thermofuncs.fits.fit import Fit
+from thermofuncs.fits.fitting import Fit
 from thermofuncs.fits.laws import with_one_more
 
 
@@ -138,5 +139,5 @@ def runs(fit: Fit) -> Tested | None:
     negative = len(signs) - positive
     if not positive or not negative:
         return None
-    count = 1 + sum(a != b for a, b in zip(signs, signs[1:], strict=False))
+    count = 1 + sum(a != b for a, b in itertools.pairwise(signs))
     return Tested(float(count), as_few_runs(count, positive, negative), "runs of signs")

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from thermofuncs.fits.fit import Estimate, Fit
+from thermofuncs.fits.fitting import Estimate, Fit
 from thermofuncs.working import Record, shown
 
 
@@ -39,9 +39,8 @@ def record_fit(fit: Fit, record: Record) -> None:
         for w, t in zip(s.weights or [1.0] * points.size, points.temperatures, strict=True)
     )
     condition = f"; condition of the scaled design {s.condition:.3g}" if s.condition is not None else ""
-    record.step(
-        "design", "Σw(1/T − 1/θ)²", f"{points.size} by {law.count}, columns centred and scaled{condition}", spread, "1/K2"
-    )
+    design = f"{points.size} by {law.count}, columns centred and scaled{condition}"
+    record.step("design", "Σw(1/T − 1/θ)²", design, spread, "1/K2")
     for (symbol, unit), value in zip(_coefficient_names(fit), s.coefficients, strict=True):
         record.step(symbol, "least squares", s.estimator, value, unit, law.source)
     if s.deviation is not None:
@@ -71,7 +70,8 @@ def record_estimate(fit: Fit, estimate: Estimate, record: Record, last: str = "v
     s = fit.solution
     prime = "′" if fit.settings.apparent else ""
     symbol = estimate.symbol + prime
-    numbers = " + ".join(f"{shown(g)} × {shown(c)}" for g, c in zip(estimate.gradient, s.coefficients, strict=True) if g)
+    pairs = zip(estimate.gradient, s.coefficients, strict=True)
+    numbers = " + ".join(f"{shown(g)} × {shown(c)}" for g, c in pairs if g)
     if fit.law.nonlinear:
         numbers = f"derivatives by α, β, γ: {', '.join(f'{g:.6g}' for g in estimate.gradient)}"
     quantity = fit.quantities.get(estimate.name)

@@ -7,7 +7,7 @@ from collections.abc import Callable
 from dataclasses import dataclass
 
 from thermofuncs.errors import NoStatistic
-from thermofuncs.fits.fit import Fit
+from thermofuncs.fits.fitting import Fit
 from thermofuncs.fits.statistics import Tested, aicc, chi_square, curvature, lack_of_fit, r_squared, runs
 
 

@@ -5,14 +5,15 @@ from __future__ import annotations
 import math
 from collections.abc import Sequence
 from dataclasses import dataclass
-from functools import cached_property
+from functools import cached_property, lru_cache
+from typing import cast
 
 from thermofuncs.errors import OptionsClash
 from thermofuncs.fits.distributions import limit_factor
 from thermofuncs.fits.estimators import solve
 from thermofuncs.fits.laws import CLARKE_GLEW, CLARKE_GLEW_SLOPE, Coefficients, Law, log_value, read_law
 from thermofuncs.fits.measures import Measure, read_measure
-from thermofuncs.fits.points import Points, read_points
+from thermofuncs.fits.points import Points, plain_points, read_points
 from thermofuncs.fits.quantities import (
     ANTOINE_CONSTANTS,
     Quantity,
@@ -27,6 +28,7 @@ from thermofuncs.fits.settings import PLAIN, Settings
 from thermofuncs.fits.weighted import Solution
 
 STANDARD_TEMPERATURE = 298.15
+KEPT_POINTS = 200  # fits of so many points are kept
 
 
 @dataclass(frozen=True, slots=True)
@@ -71,6 +73,7 @@ class Fit:
         self.points = points
         self.settings = settings
         self.solution: Solution = solve(law, points, settings)
+        self.quantities: dict[str, Quantity] = quantities(law, measure)
 
     @property
     def degrees(self) -> int:
@@ -97,11 +100,6 @@ class Fit:
         return limit_factor(self.settings.level, self.student)
 
     @property
-    def quantities(self) -> dict[str, Quantity]:
-        """The law's quantities by name."""
-        return quantities(self.law, self.measure)
-
-    @property
     def names(self) -> tuple[str, ...]:
         """The names of all quantities."""
         constants = ANTOINE_CONSTANTS if self.law.nonlinear else ()
@@ -109,14 +107,14 @@ class Fit:
 
     def name_of(self, text: str) -> str:
         """The quantity that a typed name means; UnknownQuantity where it means none."""
-        return found_name(text, self.law, dict.fromkeys(self.names))
+        return text if text in self.quantities else found_name(text, self.law, dict.fromkeys(self.names))
 
     def valued(self, name: str) -> Valued:
         """The sum behind a quantity, with its derivatives by the coefficients."""
-        s = self.solution
-        if self.law.nonlinear and name in ANTOINE_CONSTANTS:
+        s, law = self.solution, self.law
+        if law.nonlinear and name in ANTOINE_CONSTANTS:
             return antoine_constants(s.coefficients, s.theta, self.measure, self.settings.scale)[name]
-        return valued(self.quantities[name], self.law, s.coefficients, self.reference, s.theta)
+        return valued(self.quantities[name], law, s.coefficients, self.reference, s.theta)
 
     def value(self, name: str) -> float:
         """A quantity's value alone, by its exact name."""
@@ -228,5 +226,23 @@ def fit(
             raise OptionsClash(first="cp_slope", second=f"the law {read.name}", why="it is a term of Clarke-Glew")
         read = CLARKE_GLEW_SLOPE
     measure = read_measure(y_is, read)
+    if len(values) <= KEPT_POINTS and {*map(type, temperatures), *map(type, values)} == {float}:
+        t, y = cast("tuple[float, ...]", tuple(temperatures)), cast("tuple[float, ...]", tuple(values))
+        if uncertainties is None:
+            return _kept(read, measure, t, y, None, settings)
+        if set(map(type, uncertainties)) == {float}:
+            return _kept(read, measure, t, y, cast("tuple[float, ...]", tuple(uncertainties)), settings)
     points = read_points(read, measure, temperatures, values, uncertainties, settings.scale)
     return Fit(read, measure, points, settings)
+
+
+# Several cells of a sheet ask for parts of one fit; among floats alone equal cells are the same cells.
+@lru_cache(maxsize=256)
+def _kept(
+    law: Law, measure: Measure, t: tuple[float, ...], y: tuple[float, ...], u: tuple[float, ...] | None,
+    settings: Settings,
+) -> Fit:  # fmt: skip
+    points = plain_points(law, measure, t, y) if u is None and settings.scale == "K" else None
+    if points is None:
+        points = read_points(law, measure, t, y, u, settings.scale)
+    return Fit(law, measure, points, settings)
