@@ -117,6 +117,10 @@ def test_public_names() -> None:
             "import thermofuncs; thermofuncs.call('LNK', 'N2(g) + 3 H2(g) = 2 NH3(g)', 700.0)",
             ["pint", "pandas", "typer", "rich", "formualizer", "scipy.optimize", "scipy.stats"],
         ),
+        (
+            "import thermofuncs as tf; tf.call('FITVALUE', 'Clarke-Glew', 'high(drH)', [280, 290, 300, 310], [1, 2, 3, 5])",
+            ["pint", "pandas", "typer", "rich", "formualizer", "scipy.optimize", "scipy.stats"],
+        ),
     ],
 )
 def test_import_budget(code: str, forbidden: list[str]) -> None:

@@ -657,8 +657,8 @@ class TooFewPoints(NotValid):
     """A fit with fewer points, or different temperatures, than parameters."""
 
     template = (
-        "A fit of {law} has {parameters} parameters and needs points at {parameters} different temperatures: "
-        "{given} are given. {remedy}"
+        "A fit of {law} has {parameters} parameters and needs points at {parameters} different temperatures; "
+        "given: {given}. {remedy}"
     )
 
 

@@ -85,7 +85,7 @@ def test_quantities_over_a_range() -> None:
 
 @pytest.mark.parametrize("law", ["van't Hoff", "van’t Hoff", "vant Hoff", "Van 't Hoff", "van ‘t hoff", "VAN'T HOFF"])
 def test_the_spelling_of_the_law(law: str) -> None:
-    """van't Hoff is understood with either apostrophe or none."""
+    """The law van't Hoff is understood with either apostrophe or none."""
     assert call("FITVALUE", law, "drH", T, K) == call("FITVALUE", LAW, "drH", T, K)
 
 
@@ -137,31 +137,35 @@ def test_options() -> None:
 SENTENCES: dict[str, tuple[tuple[object, ...], str, str]] = {
     "law": (("Gibbs", "drH", T, K), "#VALUE!", "law is 'Gibbs': the laws are van 't Hoff, Clarke-Glew, Arrhenius"),
     "quantity": (
-        (LAW, "Ea", T, K), "#VALUE!", "quantity is 'Ea', which a fit of van 't Hoff does not give: the quantities are drH",
+        (LAW, "Ea", T, K), "#VALUE!",
+        "quantity is 'Ea', which a fit of van 't Hoff does not give: the quantities are drH",
     ),
     "y_is": (
-        (LAW, "drH", T, K, "log K"), "#VALUE!", "y_is is 'log K', where log may be lg (decadic) or ln (natural): for van",
+        (LAW, "drH", T, K, "log K"), "#VALUE!",
+        "y_is is 'log K', where log may be lg (decadic) or ln (natural): for van",
     ),
     "y_is of another law": (
-        ("Arrhenius", "Ea", T, K, "K"), "#VALUE!", "y_is is 'K', an equilibrium constant: for Arrhenius it is the unit of",
+        ("Arrhenius", "Ea", T, K, "K"), "#VALUE!",
+        "y_is is 'K', an equilibrium constant: for Arrhenius it is the unit of",
     ),
     "y_is dimension": (
-        ("Clausius-Clapeyron", "dvapH", T, K, "1/s"), "#VALUE!", "y_is is '1/s', a unit of rate constant of first order: ",
+        ("Clausius-Clapeyron", "dvapH", T, K, "1/s"), "#VALUE!",
+        "y_is is '1/s', a unit of rate constant of first order: ",
     ),
     "y_is left out": (
         ("Arrhenius", "Ea", T, K), "#VALUE!", "y_is is missing: the law Arrhenius needs the unit of the rate constants",
     ),
     "one point": (
         (LAW, "drH", [[300.0]], [[1.0]]), "#NUM!",
-        "A fit of van 't Hoff has 2 parameters and needs points at 2 different temperatures: 1 point at 1 temperature are",
+        "A fit of van 't Hoff has 2 parameters and needs points at 2 different temperatures; given: 1 point at 1",
     ),
     "equal temperatures": (
         (LAW, "drH", [[300.0]] * 3, [[1.0], [1.1], [1.2]]), "#NUM!",
-        "A fit of van 't Hoff has 2 parameters and needs points at 2 different temperatures: 3 points at 1 temperature",
+        "A fit of van 't Hoff has 2 parameters and needs points at 2 different temperatures; given: 3 points at 1",
     ),
     "no row without a blank": (
         (LAW, "drH", [[300.0], [None]], [[None], [1.0]]), "#NUM!",
-        "A fit of van 't Hoff has 2 parameters and needs points at 2 different temperatures: 0 points at 0 temperatures",
+        "A fit of van 't Hoff has 2 parameters and needs points at 2 different temperatures; given: 0 points at 0",
     ),
     "too few for Clarke-Glew": (
         ("Clarke-Glew", "drH", T[:2], K[:2]), "#NUM!", "A fit of Clarke-Glew has 3 parameters and needs points at 3",
@@ -230,15 +234,15 @@ SENTENCES: dict[str, tuple[tuple[object, ...], str, str]] = {
     ),
     "two readings": (
         (LAW, "drH", T, K, "K", None, "t_ref=25 degC"), "#VALUE!",
-        "options has 't_ref=25 degC': the unit without a space, or degC in front for all temperatures, is needed, such as"
-        " t_ref=25degC.",
+        "options has 't_ref=25 degC': the unit without a space, or degC in front for all temperatures, is needed, such",
     ),
     "unknown word": (
         (LAW, "drH", T, K, "K", None, "extrapolate"), "#VALUE!",
         "options has 'extrapolate', which TF.FITVALUE does not know: the words are u_known, u_as_weights, robust,",
     ),
     "unknown pair": (
-        (LAW, "drH", T, K, "K", None, "alpha=0.05"), "#VALUE!", "options has 'alpha=0.05', which TF.FITVALUE does not know",
+        (LAW, "drH", T, K, "K", None, "alpha=0.05"), "#VALUE!",
+        "options has 'alpha=0.05', which TF.FITVALUE does not know",
     ),
     "slope": (
         (LAW, "drH", T, K, "K", None, "cp_slope"), "#VALUE!",
@@ -272,7 +276,8 @@ def test_two_points_give_estimates_without_uncertainties() -> None:
     slope = math.log(K[1][0] / K[0][0]) / (1.0 / T[0][0] - 1.0 / T[1][0])
     assert report["drH"][0] == pytest.approx(slope * R / 1000.0, rel=1e-12)
     assert [cell.value for cell in report["drH"][1:4] if isinstance(cell, CellError)] == ["#N/A"] * 3
-    assert "2 points determine 2 parameters exactly: there is nothing to estimate an uncertainty from." in report["caution"]
+    said = "2 points determine 2 parameters exactly: there is nothing to estimate an uncertainty from."
+    assert said in report["caution"]
     known = table(call("FIT", LAW, T[:2], K[:2], "K", U[:2], "u_known"))
     by_hand = math.hypot(0.02, 0.02) / (1.0 / T[0][0] - 1.0 / T[1][0]) * R / 1000.0
     assert known["drH"][1] == pytest.approx(by_hand, rel=1e-10)
@@ -311,10 +316,9 @@ def test_predictions_table() -> None:
     assert rows[3][0] == pytest.approx(350.15)
     assert rows[3][2] == pytest.approx(32.0)
     explained = explain("FITAT", [LAW, [[350.15]], T, K])
-    assert explained.cautions == (
-        "350.15 K is 32 K above the points (283.15 to 318.15 K): extrapolated by 0.74 times their span in 1/T, with the"
-        " law taken to hold there.",
-    )
+    assert [caution.partition(",")[0] for caution in explained.cautions] == [
+        "350.15 K is 32 K above the points (283.15 to 318.15 K): extrapolated by 0.74 times their span in 1/T",
+    ]
     pk = [[-math.log10(k)] for ((k,)) in K]
     by_pk = call("FITAT", LAW, 300.0, T, pk, "pK")
     found = dict(zip(by_pk[0], by_pk[1], strict=True))
@@ -399,7 +403,7 @@ def test_the_working_shows_form_design_solution_and_propagation() -> None:
 
 
 def test_arrays_and_rows_are_columns_too() -> None:
-    """numpy arrays, rows and columns give one answer."""
+    """Arrays of numpy, rows and columns give one answer."""
     expected = call("FITVALUE", LAW, "drH", T, K)
     t, k = np.array(T), np.array(K)
     for one, other in ((t, k), (t[:, 0], k[:, 0]), (t.T.tolist(), K), (t.T, k.T)):
@@ -419,7 +423,8 @@ ODD: list[object] = [
     0.0, -1.0, 1e308, 1e-308, 300.0, 1, True, None, BLANK, "", "x", "K", "pK", "1/s", "bar", "ln bar", "drH", "u(drH)",
     "low(K)", "r(drH,drS)", "p(runs)", "van't Hoff", "Clarke-Glew", "Antoine", "Eyring", "robust", "constant_in=K",
     "level=0.5 u_known", "u_T=0.1 orthogonal", "t_ref=1e5", "cp_slope", "apparent=pH 7", CellError("#REF!"), T, K, U,
-    VAPOUR, [[300.0], [300.0]], [[None], [""]], [["a"]], [[]], [[1e308], [1e-308]], T[:3], K[:3], [[1e-300, 1e300, 5.0]],
+    VAPOUR, [[300.0], [300.0]], [[None], [""]], [["a"]], [[]], [[1e308], [1e-308]], T[:3], K[:3],
+    [[1e-300, 1e300, 5.0]],
 ]  # fmt: skip
 
 
@@ -431,7 +436,7 @@ def is_a_cell(value: object) -> bool:
 
 
 @given(st.sampled_from(FITS), st.data())
-@settings(max_examples=700, deadline=None)
+@settings(max_examples=1000, deadline=None)
 def test_odd_arguments_give_a_value_or_an_error_value(function: Function, data: st.DataObject) -> None:
     """Whatever stands in the cells, the answer is a finite value, a table of such, or an error value."""
     arguments = [*function.example, *[None] * (len(function.arguments) - len(function.example))]

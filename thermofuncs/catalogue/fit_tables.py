@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Callable
 
 from thermofuncs.errors import CellError, NoUncertainty, TextInRange, ThermofuncsError
@@ -104,7 +105,13 @@ def report(fit: Fit) -> Table:
         logarithm = "ln" if fit.measure.scale == "ln" else "lg"
         rows.append(_row("form of A, B, C", f"Antoine {logarithm} {fit.measure.unit} {settings.scale}"))
     rows.append(_row("source of the law", fit.law.source))
-    return rows + [_row("caution", sentence) for sentence in cautions(fit)]
+    return finite(rows + [_row("caution", sentence) for sentence in cautions(fit)])
+
+
+def finite(table: Table) -> Table:
+    """A table with an error in place of what a cell cannot hold."""
+    gone = CellError("#NUM!", "The value is outside the range of numbers: a logarithm of it, such as lnK, is not.")
+    return [[gone if isinstance(x, float) and not math.isfinite(x) else x for x in row] for row in table]
 
 
 def _deviation_unit(fit: Fit) -> str:
@@ -152,7 +159,7 @@ def predictions(fit: Fit, t_new: list[object]) -> tuple[Table, list[float]]:
         table.append(row)
         if found.outside:
             outside.append(t)
-    return table, outside
+    return finite(table), outside
 
 
 def temperatures(fit: Fit, y_value: list[object]) -> tuple[Table, list[FittedTemperature]]:
@@ -178,7 +185,7 @@ def temperatures(fit: Fit, y_value: list[object]) -> tuple[Table, list[FittedTem
         limits = [gone if x is None else x for x in (found.u, found.low, found.high)]
         table.append([float(cell), found.temperature, *limits, found.outside])
         answers.append(found)
-    return table, answers
+    return finite(table), answers
 
 
 def points(fit: Fit) -> Table:
@@ -196,4 +203,4 @@ def points(fit: Fit) -> Table:
             d.row + 1, d.temperature, d.observed, d.fitted, d.residual,
             why if d.standardised is None else d.standardised, d.leverage, why if d.cook is None else d.cook,
         ]  # fmt: skip
-    return [head, *table]
+    return finite([head, *table])

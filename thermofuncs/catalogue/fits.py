@@ -247,7 +247,7 @@ def fit_row(
     record: Record | None = None,
 ) -> list[list[object]]:
     """A fit as a reaction row of a data table."""
-    return reaction_row(_fitted(law, t, y, y_is, u, options, record), reaction)
+    return fit_tables.finite(reaction_row(_fitted(law, t, y, y_is, u, options, record), reaction))
 
 
 def _function(

@@ -11,6 +11,7 @@ from typing import NamedTuple
 from thermofuncs.errors import (
     DifferentLengths,
     NotAboveZeroInRange,
+    OutsideNumbers,
     TextInRange,
     TooFewPoints,
 )
@@ -19,7 +20,9 @@ from thermofuncs.fits.measures import Measure
 from thermofuncs.units import kelvin
 
 Floats = list[float]
-_NUMBERS = {float}
+COLDEST, HOTTEST = 1e-6, 1e9  # temperatures that squares and reciprocals can be taken of [K]
+LARGEST = 1e60  # a logarithm, or its uncertainty, whose weighted square is a number
+SMALLEST_U = 1e-60
 
 
 class Points(NamedTuple):
@@ -108,6 +111,8 @@ def read_points(
         _positive("y", y, kept, measure.symbol, ", as its logarithm is taken")
     if u is not None:
         _positive("u", u, kept, "a standard uncertainty", "")
+    if t and (min(t) <= COLDEST or max(t) >= HOTTEST):
+        raise OutsideNumbers(what="T", detail=f", {min(t):g} to {max(t):g} K", remedy="Check the unit of T.")
     order = sorted(range(len(t)), key=lambda i: (t[i], y[i], u[i] if u is not None else 0.0, kept[i]))
     t, y = [t[i] for i in order], [y[i] for i in order]
     u_logs = None if u is None else [measure.u_ln(b, u[i]) for i, b in zip(order, y, strict=True)]
@@ -122,7 +127,9 @@ def plain_points(law: Law, measure: Measure, temperatures: Sequence[float], valu
     if not all(map(lt, t, t[1:])):
         t, y, rows = zip(*sorted(zip(t, y, rows)))  # type: ignore[assignment]  # noqa: B905  of one length
     # a sum that is finite has finite terms
-    if not t or not (t[0] > 0.0 and isfinite(sum(t) + sum(y))) or (measure.scale == "value" and not min(y) > 0.0):
+    if not t or t[0] <= COLDEST or t[-1] >= HOTTEST or not isfinite(sum(t) + sum(y)):
+        return None
+    if measure.scale == "value" and min(y) <= 0.0:
         return None
     return _logarithms(law, measure, t, y, None, rows, len(rows))
 
@@ -143,6 +150,13 @@ def _logarithms(
         )  # fmt: skip
         raise TooFewPoints(law=law.name, parameters=law.count, given=different, remedy=remedy)
     logs = list(map(math.log if measure.is_plain else measure.to_ln, y))
+    if measure.scale != "value" and not max(map(abs, logs)) < LARGEST:
+        raise OutsideNumbers(what="y", detail=f", {min(y):g} to {max(y):g}", remedy="Check what y_is says of y.")
+    if u_logs is not None and (min(u_logs) <= SMALLEST_U or max(u_logs) >= LARGEST):
+        raise OutsideNumbers(
+            what="u", detail=f": as uncertainty of the logarithm {min(u_logs):g} to {max(u_logs):g}",
+            remedy="Check that u is in the unit of y.",
+        )  # fmt: skip
     if law.family == "Eyring":
         logs = [a - law.offset(b) for a, b in zip(logs, t, strict=True)]
     return Points(t, logs, u_logs, rows, given)
