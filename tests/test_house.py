@@ -118,7 +118,7 @@ def test_public_names() -> None:
             ["pint", "pandas", "typer", "rich", "formualizer", "scipy.optimize", "scipy.stats"],
         ),
         (
-            "import thermofuncs as tf; tf.call('FITVALUE', 'Clarke-Glew', 'high(drH)', [280, 290, 300, 310], [1, 2, 3, 5])",
+            "import thermofuncs as a; a.call('FITVALUE', 'Clarke-Glew', 'u(drH)', [280, 290, 300, 310], [1, 2, 3, 5])",
             ["pint", "pandas", "typer", "rich", "formualizer", "scipy.optimize", "scipy.stats"],
         ),
     ],

@@ -53,7 +53,12 @@ def main() -> None:
     def new(quantity: str) -> Callable[[], object]:
         return lambda: evaluate("FITVALUE", ["van't Hoff", quantity, t_cells, next(new_cells)])
 
+    def reference_from_cells() -> object:
+        fitted = sm.OLS(np.log(constants), sm.add_constant(1.0 / temperatures)).fit()
+        return fitted.params, fitted.bse, fitted.conf_int()
+
     calls: dict[str, Callable[[], object]] = {
+        "reference that makes its columns": reference_from_cells,
         "FITVALUE drH, new points": new("drH"),
         "FITVALUE u(drH), new points": new("u(drH)"),
         "FITVALUE low(drH), new points": new("low(drH)"),

@@ -61,7 +61,7 @@ def settings_of(options: Options) -> Settings:
     chosen = dict(options.others)
     if "u_known" in chosen and "u_as_weights" in chosen:
         raise OptionsClash(first="u_known", second="u_as_weights", why="they give different answers; choose one")
-    made = Settings(
+    return Settings(
         level=_level(chosen.get("level=", "0.95")),
         reference=_temperature(chosen["t_ref="], options.scale) if "t_ref=" in chosen else None,
         known="u_known" in chosen,
@@ -73,7 +73,6 @@ def settings_of(options: Options) -> Settings:
         apparent=_apparent(chosen["apparent="]) if "apparent=" in chosen else "",
         scale=options.scale,
     )
-    return PLAIN if made == PLAIN else made
 
 
 def _bad(name: str, value: str, needed: str, example: str) -> BadOptionValue:

@@ -7,9 +7,9 @@ from dataclasses import dataclass
 from thermofuncs.errors import OptionsClash, RequiredHere
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(frozen=True, slots=True, eq=False)
 class Settings:
-    """How a fit is to be made.
+    """How a fit is to be made; each reading of one text of options is one object, so that fits are found by it.
 
     Parameters
     ----------
