@@ -41,7 +41,7 @@ def diagnose(fit: Fit) -> list[PointDiagnosis]:
     Notes
     -----
     hᵢ = wᵢ gᵢᵀ (GᵀWG)⁻¹ gᵢ; rᵢ √wᵢ/(s √(1 − hᵢ)); Dᵢ = (standardised)² hᵢ/(p (1 − hᵢ)) (Cook, Technometrics
-    19 (1977) 15), with s = 1 where the uncertainties are known.
+    19 (1977) 15, citation from memory), with s = 1 where the uncertainties are known.
     """
     s, points = fit.solution, fit.points
     weights = s.weights or [1.0] * points.size

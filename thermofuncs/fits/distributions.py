@@ -52,7 +52,8 @@ def as_few_runs(runs: int, positive: int, negative: int) -> float:
 
     Notes
     -----
-    The exact distribution of Wald & Wolfowitz, Ann. Math. Statist. 11 (1940) 147.
+    The exact distribution of Wald & Wolfowitz, Ann. Math. Statist. 11 (1940) 147 (citation from
+    memory).
     """
     ways = 0
     for r in range(2, runs + 1):

@@ -121,7 +121,7 @@ def _constant_in_value(law: Law, points: Points, settings: Settings) -> Solution
 
 
 def _effective_variance(law: Law, points: Points, settings: Settings) -> Solution:
-    """Weights 1/(u² + (d ln y/dT)² u_T²), iterated with the fitted slope (Orear, Am. J. Phys. 50 (1982) 912)."""
+    """Weights 1/(u² + (d ln y/dT)² u_T²), iterated with the fitted slope (Orear 1982, citation from memory)."""
     name = "effective variance: least squares with weights 1/(u² + (d ln y/dT · u_T)²), iterated"
     stated = points.u_logs or []
     weights = [1.0 / (u * u) for u in stated]

@@ -65,7 +65,7 @@ def linear_least_squares(
     -----
     With an intercept the columns and y are centred at their weighted means, which is the first step of the
     decomposition written out; each column is scaled to length 1, and R comes from Householder reflections
-    (Björck, Numerical Methods for Least Squares Problems, SIAM 1996, sections 1.3 and 2.7). The residuals are
+    (Björck, Numerical Methods for Least Squares Problems, SIAM 1996, citation from memory). The residuals are
     taken from the uncentred design, and their projection corrects the solution once.
     """
     x = np.asarray(columns, dtype=np.float64)

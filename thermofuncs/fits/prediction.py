@@ -105,7 +105,7 @@ def temperature_of(fit: Fit, log: float, given: str) -> FittedTemperature:
     Notes
     -----
     The limits are the temperatures at which the value stands on the fit's confidence band (for a line
-    Fieller's theorem, J. R. Statist. Soc. B 16 (1954) 175), so they are not symmetric.
+    Fieller's theorem, J. R. Statist. Soc. B 16 (1954) 175, citation from memory), so they are not symmetric.
     """
     low, high = SEARCH[0] * fit.points.low, SEARCH[1] * fit.points.high
     if fit.law.nonlinear:  # below −C there is no vapour pressure

@@ -41,8 +41,8 @@ def huber(residuals_for: Callable[[list[float]], list[float]], n: int, parameter
 
     Notes
     -----
-    Huber, Robust Statistics, Wiley 1981: ψ of section 7.1 with c = 1.345, scale by the median absolute
-    residual, covariance of section 7.6 with the small-sample factor K = 1 + (p/n) var(ψ')/mean(ψ')².
+    Huber, Robust Statistics, Wiley 1981 (citation from memory): ψ with c = 1.345, scale by the median absolute
+    residual, covariance with the small-sample factor K = 1 + (p/n) var(ψ')/mean(ψ')².
     """
     factors = [1.0] * n
     residuals = residuals_for(factors)

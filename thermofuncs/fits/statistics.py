@@ -53,7 +53,8 @@ def aicc(fit: Fit) -> float | None:
     Notes
     -----
     n ln(Σwr²/n) + 2k + 2k(k + 1)/(n − k − 1) with k = p + 1, the variance being one more parameter; with
-    known uncertainties χ² in place of the first term and k = p (Hurvich & Tsai, Biometrika 76 (1989) 297).
+    known uncertainties χ² in place of the first term and k = p (Hurvich & Tsai, Biometrika 76 (1989) 297,
+    citation from memory).
     Smaller is better, between laws fitted to the same points with the same weights.
     """
     if fit.settings.robust:
