@@ -68,7 +68,7 @@ def nonlinear_least_squares(
 
     Notes
     -----
-    Two searches of scipy.optimize.least_squares start from the same place, Levenberg-Marquardt (Moré 1978, from memory) and
+    Two searches of scipy.optimize.least_squares start from one place, Levenberg-Marquardt (Moré 1978, from memory) and
     the reflective trust region; the lower sum of squares is taken. Gauss-Newton steps through the QR
     engine then carry it on as long as they lower the sum or shorten, which gains the last digits.
     """
