@@ -22,6 +22,7 @@ FLOORS = {
     "reactions": 2, "balancing": 2,
     "combination": 3, "compiled": 3, "standard": 3, "quotient": 3,
     "relations": 3, "conversions": 3, "rate_constants": 3, "vapour_pressure": 3, "heat_capacity_sums": 3,
+    "fits": 3,
     "catalogue": 5,
     "workbook": 6,
     "reference_page": 8, "cli": 8, "cli_output": 8,
@@ -114,6 +115,10 @@ def test_public_names() -> None:
         ),
         (
             "import thermofuncs; thermofuncs.call('LNK', 'N2(g) + 3 H2(g) = 2 NH3(g)', 700.0)",
+            ["pint", "pandas", "typer", "rich", "formualizer", "scipy.optimize", "scipy.stats"],
+        ),
+        (
+            "import thermofuncs as a; a.call('FITVALUE', 'Clarke-Glew', 'u(drH)', [280, 290, 300, 310], [1, 2, 3, 5])",
             ["pint", "pandas", "typer", "rich", "formualizer", "scipy.optimize", "scipy.stats"],
         ),
     ],

@@ -613,3 +613,93 @@ class WrongSide(NotValid):
     """A species whose coefficient is not positive."""
 
     template = 'equation "{what}" balances only with {species} on the other side or left out.'
+
+
+# --- fits of measured data -------------------------------------------------------------------------
+
+
+class UnknownLaw(NotUnderstood):
+    """A law's name is not in the closed list."""
+
+    template = "law is {given!r}: the laws are {known}."
+
+
+class UnknownQuantity(NotUnderstood):
+    """A quantity that the law does not have."""
+
+    template = "quantity is {given!r}, which a fit of {law} does not give: the quantities are {known}."
+
+
+class UnknownColumn(NotUnderstood):
+    """What the measured column holds is not understood, or does not fit the law."""
+
+    template = "y_is is {given!r}, {why}: for {law} it is {known}."
+
+
+class BadOptionValue(NotUnderstood):
+    """An option has a value that cannot be used."""
+
+    template = "options has {given!r}: {needed} is needed, such as {example}."
+
+
+class OptionsClash(NotUnderstood):
+    """Options that exclude each other."""
+
+    template = "options has {first} and {second}: {why}."
+
+
+class NotAboveZeroInRange(NotValid):
+    """A cell of a range must be positive and finite."""
+
+    template = "{argument} has {given} as cell number {place} in row order: {what} above 0 is needed{why}."
+
+
+class TooFewPoints(NotValid):
+    """A fit with fewer points, or different temperatures, than parameters."""
+
+    template = (
+        "A fit of {law} has {parameters} parameters and needs points at {parameters} different temperatures; "
+        "given: {given}. {remedy}"
+    )
+
+
+class PointsDoNotDetermine(NotValid):
+    """The points leave a combination of the parameters open."""
+
+    template = (
+        "The points do not determine the {parameters} parameters of {law}: the temperatures are too close to each "
+        "other. Measure over a wider range, or fit a law with fewer parameters."
+    )
+
+
+class NoUncertainty(NotAvailable):
+    """A fit whose points leave nothing over for an uncertainty."""
+
+    template = (
+        "{what} needs more points than parameters, or known uncertainties: {n} points determine {parameters} "
+        "parameters exactly. Add points, or give u and the option u_known."
+    )
+
+
+class NoStatistic(NotAvailable):
+    """A statistic that these points cannot give."""
+
+    template = "{what} is not available: {why}."
+
+
+class NoConvergence(NotValid):
+    """An iterated fit that does not settle."""
+
+    template = "The fit of {law} does not settle: {why}. {remedy}"
+
+
+class NoFittedTemperature(NotValid):
+    """The fitted law does not have the value."""
+
+    template = "y_value = {given} is not reached by the fit anywhere from {low} to {high} K: there it runs from {ends}."
+
+
+class NoReactionRow(NotUnderstood):
+    """A law whose fit is no reaction of a data table."""
+
+    template = "law is {law}, whose fit gives no ΔrH° and ΔrS° of a reaction: {remedy}."

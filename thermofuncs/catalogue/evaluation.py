@@ -23,6 +23,7 @@ from thermofuncs.catalogue.single import computed, read_arguments
 from thermofuncs.errors import BadArguments, CellError, ThermofuncsError, TooManyArguments, UnknownFunction
 from thermofuncs.working import Record, Step
 
+SINGLE = (float, str)  # what most cells hold, known at a glance not to be a range
 EXPLAINED_CELLS = 2_000  # a range's cautions are gathered from at most so many of its cells
 
 
@@ -137,7 +138,7 @@ def run(function: Function, arguments: Sequence[object], record: Record | None) 
     options = options_of(function, arguments) if function.options else PLAIN
     table = function.result_shape == "table"  # it is of one thing, and reads no range as many
     for argument, value in zip(declared, arguments, strict=False):
-        if type(value) is not float and argument.kind in BROADCAST and is_range(value) and not table:
+        if type(value) not in SINGLE and argument.kind in BROADCAST and is_range(value) and not table:
             return over_range(function, arguments, options)
     values, unit = read_arguments(function, arguments, options)
     return computed(function, values, unit, record)

@@ -5,13 +5,14 @@ from __future__ import annotations
 from collections.abc import Mapping
 from types import MappingProxyType
 
-from thermofuncs.catalogue import explanation, reactions, relations, substances
+from thermofuncs.catalogue import explanation, fits, reactions, relations, substances
 from thermofuncs.catalogue.declaration import Function
 
 GROUPS: tuple[tuple[str, tuple[Function, ...]], ...] = (
     ("Substances", substances.FUNCTIONS),
     ("Reactions", reactions.FUNCTIONS),
     ("Relations with typed constants", relations.FUNCTIONS),
+    ("Fits of measured data", fits.FUNCTIONS),
     ("Explanation", explanation.FUNCTIONS),
 )
 

@@ -5,9 +5,11 @@ from __future__ import annotations
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from functools import lru_cache
+from itertools import chain
 
 from thermofuncs.catalogue.declaration import BLANK, Argument, Function
 from thermofuncs.errors import (
+    BadOptionValue,
     BlankArgument,
     CellError,
     MissingArgument,
@@ -20,6 +22,7 @@ from thermofuncs.substances.user_table import UserData, parse
 from thermofuncs.units import dimension, kelvin, quantity
 
 SCALES = ("degC", "degF")
+DEGREES = ("t_ref=", "u_T=")  # options whose number may have a unit behind it
 
 
 class PassedError(Exception):
@@ -39,11 +42,13 @@ class Options:
     extrapolate : bool. Continue the data with a constant Cp.
     atm : bool. Gases at a standard pressure of 1 atm.
     scale : str. Scale of bare temperatures.
+    others : tuple of pairs. Further words with an empty text, and names of ``name=value`` with their value.
     """
 
     extrapolate: bool = False
     atm: bool = False
     scale: str = "K"
+    others: tuple[tuple[str, str], ...] = ()
 
 
 PLAIN = Options()
@@ -51,18 +56,54 @@ PLAIN = Options()
 
 @lru_cache(maxsize=512)
 def read_options(text: str, known: tuple[str, ...], function: str) -> Options:
-    """The options of a text of words separated by spaces."""
+    """The options of a text of words and ``name=value`` pairs separated by spaces.
+
+    Parameters
+    ----------
+    text : str. A word that is no option goes on with the value before it: ``apparent=pH 7.5``.
+    known : tuple of str. The function's words, and names of pairs with their sign: ``level=``.
+    function : str.
+    """
     chosen: dict[str, object] = {}
-    for word in text.split():
-        if word not in known:
-            raise UnknownOption(word=word, function=f"TF.{function}", known=", ".join(known) or "none")
+    others: dict[str, str] = {}
+    for word, value in _pairs(text, known, function):
         if word in SCALES:
             if chosen.get("scale", word) != word:
                 raise UnknownOption(word=text, function=f"TF.{function}", known="degC or degF, not both")
             chosen["scale"] = word
-        else:
+        elif word in {"extrapolate", "atm"}:
             chosen[word] = True
-    return Options(**chosen)  # type: ignore[arg-type]  # the words are the names of the fields
+        elif others.setdefault(word, value) != value:
+            raise BadOptionValue(given=f"{word}{value}", needed=f"one {word}", example=f"{word}{others[word]}")
+    return Options(**chosen, others=tuple(sorted(others.items())))  # type: ignore[arg-type]  # the names of the fields
+
+
+def _pairs(text: str, known: tuple[str, ...], function: str) -> list[tuple[str, str]]:
+    """Words with an empty text, and names of pairs with their values."""
+    found: list[tuple[str, str]] = []
+    for word in text.split():
+        name, sign, value = word.partition("=")
+        if sign and name + sign in known:
+            found.append((name + sign, value))
+        elif word in known and not sign:
+            if word in SCALES and found and found[-1][0] in DEGREES and not found[-1][1].isalpha():
+                _refuse_two_readings(*found[-1], word)
+            found.append((word, ""))
+        elif not sign and found and found[-1][0].endswith("="):
+            found[-1] = (found[-1][0], f"{found[-1][1]} {word}".strip())
+        else:
+            raise UnknownOption(word=word, function=f"TF.{function}", known=", ".join(known) or "none")
+    return found
+
+
+def _refuse_two_readings(name: str, value: str, scale: str) -> None:
+    """Refuse a scale right behind a bare number: it may belong to the number, or to all temperatures."""
+    try:
+        float(value)
+    except ValueError:
+        return
+    needed = f"the unit without a space, or {scale} in front for all temperatures,"
+    raise BadOptionValue(given=f"{name}{value} {scale}", needed=needed, example=f"{name}{value}{scale}")
 
 
 def described(value: object) -> str:
@@ -155,9 +196,15 @@ def as_cell(value: object, argument: Argument) -> object:
 
 def read_list(value: object, argument: Argument, _: Options) -> list[object]:
     """A range as one list, row by row."""
-    rows = cells(value)
-    first_error(rows)
-    return [as_cell(cell, argument) for row in rows for cell in row]
+    if type(value) is not list:
+        value = [value.ravel().tolist()] if hasattr(value, "ravel") else [[value]]
+    if value and type(value[0]) is not list:
+        value = cells(value)
+    flat = list(chain.from_iterable(value))
+    kinds = set(map(type, flat))
+    if CellError in kinds:
+        first_error([flat])
+    return [as_cell(cell, argument) for cell in flat] if int in kinds else flat
 
 
 def read_table(value: object, argument: Argument, _: Options) -> list[list[object]]:

@@ -12,6 +12,8 @@ from thermofuncs.errors import BadArguments, CellError, NotANumber, ThermofuncsE
 from thermofuncs.units import convert, factor
 from thermofuncs.working import Record, shown
 
+APART = ("unit", "input unit")  # kinds that are no argument of the computation
+
 
 def computed(
     function: Function, values: Sequence[object], unit: str | None, record: Record | None
@@ -41,8 +43,8 @@ def read_arguments(
         kind = argument.kind
         if type(value) is CellError:
             raise PassedError(value)
-        if kind == "options":
-            values.append(options)
+        if kind == "options" or (value is None and argument.optional):
+            values += [] if kind in APART else [options if kind == "options" else None]
             continue
         try:
             read = _read_one(function, arguments, argument, value, options)
